@@ -65,9 +65,9 @@ func (b *Block) SecretBits() float64 {
 		2*math.Log2(2*pa) - math.Log2(2/b.EpsilonCor)
 }
 
-// estimateSteps is plenty: each step gains a factor of twice the exponents of
-// ε_pe, that is of twenty or more.
-const estimateSteps = 8
+// estimateEnd ends the iteration: each step gains a factor of twice the
+// exponents of ε_pe, that is of twenty or more.
+const estimateEnd = 1e-10
 
 // bestEstimate returns the ν that makes most key, and ε_pa/ε_sec there.
 //
@@ -83,7 +83,8 @@ func (b *Block) bestEstimate() (nu, paShare float64, ok bool) {
 	n, k, delta := b.KeyBits, b.CheckBits, b.CheckError
 	m := n + k
 	s, kappa := 0.5, 1.0
-	for range estimateSteps {
+	for last := 0.0; math.Abs(nu-last) > estimateEnd*nu || nu == 0; {
+		last = nu
 		t := kappa / (1 + 2*kappa)
 		lnPe2 := 2 * math.Log(t*b.EpsilonSec)
 		xi := math.Sqrt(-(n + 1) * (lnPe2 + math.Log(s)) / (2 * m * k))

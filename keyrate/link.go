@@ -106,6 +106,10 @@ func (v *view) key(windowS float64, r *Rate) {
 // secretBps returns the asymptotic rate of both bases, each with the other's
 // bit error as its phase error.
 func secretBps(r *Rate, f float64) float64 {
-	hk, hc := BinaryEntropy(r.QBER[KeyBasis]), BinaryEntropy(r.QBER[CheckBasis])
+	hk := BinaryEntropy(r.QBER[KeyBasis])
+	hc := hk
+	if r.QBER[CheckBasis] != r.QBER[KeyBasis] {
+		hc = BinaryEntropy(r.QBER[CheckBasis])
+	}
 	return r.SiftedHz[KeyBasis]*max(0, 1-f*hk-hc) + r.SiftedHz[CheckBasis]*max(0, 1-f*hc-hk)
 }

@@ -62,3 +62,22 @@ func BenchmarkBestWindowFinite(b *testing.B) {
 		l.BestWindow(p)
 	}
 }
+
+// BenchmarkBest searches pump and window together.
+func BenchmarkBest(b *testing.B) {
+	l, p := campus()
+	b.ReportAllocs()
+	for b.Loop() {
+		l.Best(p, Free{MaxPairRateHz: 2e7, Window: true})
+	}
+}
+
+// BenchmarkBestFinite searches pump, window and share of a finite block.
+func BenchmarkBestFinite(b *testing.B) {
+	l, p := campus()
+	l.BlockBits, l.EpsilonTotal = 1e6, 1e-10
+	b.ReportAllocs()
+	for b.Loop() {
+		l.Best(p, Free{MaxPairRateHz: 2e7, Window: true, KeyShare: true})
+	}
+}

@@ -1,0 +1,106 @@
+package scenarios
+
+import (
+	"math"
+	"strconv"
+
+	"pairspan/link"
+)
+
+// blank returns a scenario in which no number is stated.
+func blank(detectors []string) *Scenario {
+	s := &Scenario{Detectors: make([]Detector, len(detectors))}
+	for i, name := range detectors {
+		s.Detectors[i].Name = name
+	}
+	each(s, func(r *row, i int, _ string) {
+		if r.at == nil {
+			return
+		}
+		if at := r.at(s, i); at != nil {
+			*at = math.NaN()
+		}
+	})
+	return s
+}
+
+// useDefaults fills in what the file leaves out, and lists it.
+func (r *reader) useDefaults() {
+	each(r.s, func(e *row, i int, name string) {
+		if r.stated[name] != nil || r.stated[parent(name)] == nil && !alwaysThere(parent(name)) || !r.applies(e) {
+			return
+		}
+		value, source := e.def, e.source
+		switch {
+		case e.derive != nil:
+			value, source = e.derive(r.s, i)
+		case value == "" || e.asSaid:
+		case e.form == numberForm && len(e.words) == 0:
+			*e.at(r.s, i), _ = strconv.ParseFloat(value, 64) // a test holds that every default is a number
+		default:
+			e.set(r.s, i, value)
+		}
+		idle := e.unless != "" && r.stated[join(parent(name), e.unless)] != nil
+		if value != "" && !idle {
+			r.s.DefaultsUsed = append(r.s.DefaultsUsed, Default{name, value, source})
+		}
+	})
+}
+
+// alwaysThere reports whether a group's defaults hold though the file leaves
+// the group out: those without any required entry do.
+func alwaysThere(group string) bool {
+	switch group {
+	case "", "distance", "source.unpaired_photons_hz":
+		return true
+	}
+	return false
+}
+
+// applies reports whether the source is of the kind that an entry is for.
+func (r *reader) applies(e *row) bool {
+	return e.only == "" || (e.only == pulsed) == (r.stated["source.pulse_rate_hz"] != nil)
+}
+
+// bandwidthOfBob is what energy conservation makes of Alice's bandwidth.
+func bandwidthOfBob(s *Scenario, arm int) (value, source string) {
+	if width := s.Bandwidth(Bob); arm == Bob && Stated(width) {
+		return brief(width), "energy conservation, from Alice's bandwidth"
+	}
+	return "", ""
+}
+
+// defaultAttenuation is that of a measured run, stored with the arm since
+// the fibre's class knows nothing of it; else that of the fibre's class.
+func defaultAttenuation(s *Scenario, arm int) (value, source string) {
+	a := &s.Arms[arm]
+	class, _ := link.ClassByName(a.Fibre)
+	if db, from, ok := class.Attenuation(s.Source.WavelengthNm[arm]); ok {
+		return brief(db), from
+	}
+	if Stated(a.MeasuredLossDB) && a.LengthKm > 0 {
+		a.LossDBPerKm = a.MeasuredLossDB / a.LengthKm
+		return brief(a.LossDBPerKm), "measured_loss_db over length_km, since the class has no figure here"
+	}
+	return "", ""
+}
+
+func defaultDispersion(s *Scenario, arm int) (value, source string) {
+	if d := link.Dispersion(s.Source.WavelengthNm[arm]); Stated(d) {
+		return brief(d), link.SourceDispersion
+	}
+	return "", ""
+}
+
+func defaultPMD(s *Scenario, arm int) (value, source string) {
+	if class, ok := link.ClassByName(s.Arms[arm].Fibre); ok {
+		return brief(class.PMDPsPerSqrtKm), link.SourcePMD
+	}
+	return "", ""
+}
+
+// brief writes a computed figure with six digits.
+func brief(x float64) string {
+	rounded, _ := strconv.ParseFloat(strconv.FormatFloat(x, 'g', 6, 64), 64)
+	return figure(rounded)
+}
