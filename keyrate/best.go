@@ -192,7 +192,7 @@ func (v *view) worth(windowS float64, finite bool) float64 {
 	l := v.link
 	if finite {
 		b := l.Split(&r)
-		if bits := b.SecretBits(); bits > 0 {
+		if bits := b.SecretBits() - l.AuthenticationBits; bits > 0 {
 			return bits / l.BlockBits * r.SiftedBps()
 		} else {
 			return bits / l.BlockBits

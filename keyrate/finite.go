@@ -25,14 +25,10 @@ func (l *Link) Split(r *Rate) Block {
 	}
 }
 
-// finiteRate returns whole secret bits of a block over the time it takes.
-func (l *Link) finiteRate(r *Rate) float64 {
+// wholeBits returns the secret bits of a block, floored, not below 0.
+func (l *Link) wholeBits(r *Rate) float64 {
 	b := l.Split(r)
-	bits := math.Floor(b.SecretBits())
-	if !(bits > 0) {
-		return 0
-	}
-	return bits / l.BlockBits * r.SiftedBps()
+	return max(0, math.Floor(b.SecretBits()))
 }
 
 // SecretBits returns the secret bits of the block, not rounded; zero or

@@ -17,15 +17,16 @@ type Arm struct {
 // Link is a whole link at one distance with one state. It is a plain value:
 // copy it, edit it, ask again.
 type Link struct {
-	PulseRateHz      float64    // pulses per second; 0: continuous
-	Modes            float64    // Schmidt modes per polarisation, ≥ 1; +Inf: Poisson
-	StateError       [2]float64 // error of a lone pair in the key and the check basis
-	Arms             [2]Arm
-	SpreadFWHMPs     float64 // continuous: spread of the difference of the arrival times
-	ErrorCorrectionF float64 // f ≥ 1
-	DutyCycle        float64 // share of the time that makes key
-	BlockBits        float64 // sifted bits of a block; 0: asymptotic
-	EpsilonTotal     float64 // failure probability of a block
+	PulseRateHz        float64    // pulses per second; 0: continuous
+	Modes              float64    // Schmidt modes per polarisation, ≥ 1; +Inf: Poisson
+	StateError         [2]float64 // error of a lone pair in the key and the check basis
+	Arms               [2]Arm
+	SpreadFWHMPs       float64 // continuous: spread of the difference of the arrival times
+	ErrorCorrectionF   float64 // f ≥ 1
+	DutyCycle          float64 // share of the time that makes key
+	BlockBits          float64 // sifted bits of a block; 0: asymptotic
+	EpsilonTotal       float64 // failure probability of a block
+	AuthenticationBits float64 // secret bits that a block's messages use up
 }
 
 // OperatingPoint is what an operator can turn, and nothing else.
@@ -46,7 +47,7 @@ type Rate struct {
 	QBER         [2]float64 // of each basis, 0 to 1/2
 	SecretBps    float64    // asymptotic, both bases
 	FiniteBps    float64    // finite-size, key basis; 0 without a block
-	UsableBps    float64
+	UsableBps    float64    // of one or the other: authentication and the time off taken off
 }
 
 // ArmRate is what the detectors of one arm do.
@@ -58,6 +59,12 @@ type ArmRate struct {
 
 // SiftedBps returns the sifted rate of both bases together.
 func (r *Rate) SiftedBps() float64 { return r.SiftedHz[KeyBasis] + r.SiftedHz[CheckBasis] }
+
+// KeyBasisSecretBps returns the asymptotic rate of the key basis alone, which
+// finite-size rates tend to, since they disclose the check basis.
+func (r *Rate) KeyBasisSecretBps(f float64) float64 {
+	return r.SiftedHz[KeyBasis] * max(0, SecretFraction(r.QBER[KeyBasis], r.QBER[CheckBasis], f))
+}
 
 // Key computes the whole model at one operating point: dead time, the slots
 // of both bases, sifting, asymptotic and finite-size key. It is good to 1e-10
@@ -78,8 +85,10 @@ func (v *view) judge(r *Rate) {
 		r.UsableBps = l.DutyCycle * r.SecretBps
 		return
 	}
-	r.FiniteBps = l.finiteRate(r)
-	r.UsableBps = l.DutyCycle * r.FiniteBps
+	bits := l.wholeBits(r)
+	blocksHz := r.SiftedBps() / l.BlockBits
+	r.FiniteBps = bits * blocksHz
+	r.UsableBps = l.DutyCycle * max(0, bits-l.AuthenticationBits) * blocksHz
 }
 
 // key fills in all that follows from the window.

@@ -104,6 +104,10 @@ func rivalsOf() map[string][]string {
 		"source.pulse_rate_hz":   {"source.pair_rate_hz", "source.max_pair_rate_hz"},
 		"source.pairs_per_pulse": {"source.pair_rate_hz", "source.max_pair_rate_hz", "source.counted"},
 		"source.counted":         {"source.pair_rate_hz", "source.pairs_per_pulse"},
+
+		"need.secret_rate_bps":  {"need.aes256_renewal_s", "need.encrypted_connections", "need.key_bits_per_day"},
+		"need.aes256_renewal_s": {"need.secret_rate_bps", "need.key_bits_per_day"},
+		"need.key_bits_per_day": {"need.secret_rate_bps", "need.aes256_renewal_s", "need.encrypted_connections"},
 	}
 	for _, k := range stateKinds {
 		for _, other := range stateKinds {

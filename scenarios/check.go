@@ -68,6 +68,7 @@ func (r *reader) check() {
 	r.checkCounted()
 	r.checkArms()
 	r.checkWindow()
+	r.checkNeed()
 	r.readMatrix()
 	if len(r.errs) > 0 {
 		return
@@ -129,11 +130,40 @@ func (r *reader) checkEmission() {
 	}
 	for _, l := range r.leaves {
 		if !r.applies(l.row) {
-			r.fail(l.name, r.keys[l.name], "only "+l.row.only+" has it", "leave it out; a source with pulse_rate_hz is pulsed, one without is continuous")
+			hint := "leave it out; a source with pulse_rate_hz is pulsed, one without is continuous"
+			if l.row.only == renewing {
+				hint = "state aes256_renewal_s beside it, or leave it out"
+			}
+			r.fail(l.name, r.keys[l.name], "only "+l.row.only+" has it", hint)
 		}
 	}
 	r.atMost("source.pair_rate_hz", "source.max_pair_rate_hz")
 	r.atMost("source.pairs_per_pulse", "source.max_pairs_per_pulse")
+	r.checkPump("source.pair_rate_hz", "source.max_pair_rate_hz")
+	r.checkPump("source.pairs_per_pulse", "source.max_pairs_per_pulse")
+}
+
+// checkPump refuses to search a pump whose ceiling is not known.
+func (r *reader) checkPump(name, ceiling string) {
+	if n := r.stated[name]; n != nil && n.text == "auto" && r.stated[ceiling] == nil {
+		r.fail(name, n.at, "auto, though its ceiling is not known", "state "+ceiling+": what the pump can reach")
+	}
+}
+
+// needs are the forms of a need, of which one can stand.
+var needs = []string{"need.secret_rate_bps", "need.aes256_renewal_s", "need.key_bits_per_day"}
+
+func (r *reader) checkNeed() {
+	r.exclude("state the need in one form", slices.Clone(needs)...)
+	if r.stated["need"] == nil || r.wrong["need"] {
+		return
+	}
+	for _, name := range needs {
+		if r.stated[name] != nil {
+			return
+		}
+	}
+	r.fail("need", r.keys["need"], "nothing is needed", "state one of "+oneOf(needs)+", or leave need out")
 }
 
 // atMost reports a number above another that bounds it; one that is not

@@ -51,15 +51,23 @@ func (r *reader) useDefaults() {
 // the group out: those without any required entry do.
 func alwaysThere(group string) bool {
 	switch group {
-	case "", "distance", "source.unpaired_photons_hz":
+	case "", "distance", "uncertainty", "source.unpaired_photons_hz":
 		return true
 	}
 	return false
 }
 
-// applies reports whether the source is of the kind that an entry is for.
+// applies reports whether an entry is for this kind of source, or of need.
 func (r *reader) applies(e *row) bool {
-	return e.only == "" || (e.only == pulsed) == (r.stated["source.pulse_rate_hz"] != nil)
+	switch e.only {
+	case pulsed:
+		return r.stated["source.pulse_rate_hz"] != nil
+	case continuous:
+		return r.stated["source.pulse_rate_hz"] == nil
+	case renewing:
+		return r.stated["need.aes256_renewal_s"] != nil
+	}
+	return true
 }
 
 // bandwidthOfBob is what energy conservation makes of Alice's bandwidth.

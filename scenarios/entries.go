@@ -19,10 +19,11 @@ const (
 	ownForm           // read by a reader of its own
 )
 
-// The two kinds of emission that some entries are limited to.
+// What some entries are limited to: a kind of emission, or a form of the need.
 const (
 	pulsed     = "a pulsed source"
 	continuous = "a continuous source"
+	renewing   = "a need with aes256_renewal_s"
 )
 
 // row is one entry of a scenario file: everything that reading, errors,

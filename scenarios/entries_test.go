@@ -33,6 +33,10 @@ func beside(name string) []Change {
 		return []Change{{"source.pulse_rate_hz", "1.0e+8"}}
 	case r.only == pulsed, name == "source.pulse_rate_hz":
 		return []Change{{"source.pulse_rate_hz", "1.0e+8"}, {"source.pairs_per_pulse", "0.02"}}
+	case name == "need.budget":
+		return []Change{{"need.secret_rate_bps", "100"}}
+	case r.only == renewing:
+		return []Change{{"need.aes256_renewal_s", "60"}}
 	case strings.HasPrefix(name, "finite_key"):
 		return []Change{{"finite_key", "{ sifted_bits_per_block: 2.0e+6, epsilon_total: 2.0e-10 }"}}
 	case strings.HasPrefix(name, "source.state.visibility"):

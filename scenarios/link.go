@@ -33,6 +33,7 @@ func (s *Scenario) Link(km float64, m sources.Member) keyrate.Link {
 	}
 	if s.Finite() {
 		l.BlockBits, l.EpsilonTotal = s.SiftedBitsPerBlock, s.EpsilonTotal
+		l.AuthenticationBits = s.AuthenticationBitsPerBlock
 	}
 	for i := range l.Arms {
 		l.Arms[i] = s.arm(i, length[i])
@@ -40,11 +41,18 @@ func (s *Scenario) Link(km float64, m sources.Member) keyrate.Link {
 	return l
 }
 
-// Setting returns the operating point as described; a window left to the
-// planner is 0 until Settle finds it.
+// Setting returns the operating point as described. What is left to the
+// planner stands at its start until Settle finds it: a window at 0, the pump
+// at its ceiling, the share of the key basis at a half.
 func (s *Scenario) Setting() keyrate.OperatingPoint {
 	emission, _ := s.Emission() // reading has refused what cannot be counted
 	p := keyrate.OperatingPoint{PairRateHz: emission.PairRateHz, KeyShare: s.KeyBasisShare}
+	if s.Source.PumpAuto {
+		p.PairRateHz, _ = s.Ceiling()
+	}
+	if s.KeyShareAuto {
+		p.KeyShare = evenShare
+	}
 	if !s.WindowAuto {
 		p.WindowS = s.WindowPs / psPerSecond
 	}
@@ -54,10 +62,14 @@ func (s *Scenario) Setting() keyrate.OperatingPoint {
 // Settle searches the settings that the scenario leaves to the planner, for
 // one link.
 func (s *Scenario) Settle(l *keyrate.Link, p keyrate.OperatingPoint) keyrate.OperatingPoint {
-	if s.WindowAuto {
-		return l.BestWindow(p)
+	free := keyrate.Free{Window: s.WindowAuto, KeyShare: s.KeyShareAuto}
+	if s.Source.PumpAuto {
+		free.MaxPairRateHz, _ = s.Ceiling()
 	}
-	return p
+	if free == (keyrate.Free{}) {
+		return p
+	}
+	return l.Best(p, free)
 }
 
 // stateErrors returns the errors of a lone pair in the key and check basis.

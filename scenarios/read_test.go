@@ -37,9 +37,12 @@ func TestDefaults(t *testing.T) {
 			PumpPulseFWHMPs: nan, BandwidthFWHMNm: [2]float64{0.8, nan},
 		},
 		Arms:       [2]Arm{alice, bob},
-		Detectors:  []Detector{{Name: "gated", Detector: link.Detector{Efficiency: 0.2, DarkCountsHz: 1200, JitterFWHMPs: 180, DeadTimeNs: 10000}}},
+		Detectors:  []Detector{{Name: "gated", Price: nan, SitePrice: nan, Detector: link.Detector{Efficiency: 0.2, DarkCountsHz: 1200, JitterFWHMPs: 180, DeadTimeNs: 10000}}},
 		WindowAuto: true, WindowPs: nan, KeyBasisShare: 0.5, ErrorCorrectionF: 1.16, DutyCycle: 1,
-		SiftedBitsPerBlock: nan, EpsilonTotal: nan, NeedBps: nan, ToKm: nan, Points: 241, Lengthen: LengthenBob,
+		SiftedBitsPerBlock: nan, EpsilonTotal: nan, AuthenticationBitsPerBlock: nan,
+		NeedBps: nan, AES256RenewalS: nan, EncryptedConnections: nan, KeyBitsPerDay: nan, Budget: nan, Draws: 2000, Seed: 1,
+		Measured: Measured{[2]float64{nan, nan}, nan, nan, nan, nan, nan},
+		ToKm:     nan, Points: 241, Lengthen: LengthenBob,
 		Inputs: []Input{{"x.yaml", errBase}},
 	}
 	s := mustRead(t, errBase)
@@ -88,7 +91,9 @@ error_correction_f 1.16
 duty_cycle 1
 distance.to_km chosen by the planner
 distance.points 241
-distance.lengthen bob`
+distance.lengthen bob
+uncertainty.draws 2000
+uncertainty.seed 1`
 	if diff := cmp.Diff(want2, strings.Join(got, "\n")); diff != "" {
 		t.Error(diff)
 	}

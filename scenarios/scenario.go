@@ -25,18 +25,26 @@ type Scenario struct {
 	Arms      [2]Arm     // Alice, Bob
 	Detectors []Detector // in file order
 
-	WindowAuto         bool    // the planner searches the coincidence window
-	WindowPs           float64 // full width, ps, > 0; NaN where WindowAuto
-	ClockJitterFWHMPs  float64 // FWHM of the clocks against each other, ps
-	KeyBasisShare      float64 // probability of the key basis, 0.5 to 0.99
-	ErrorCorrectionF   float64 // leak over the Shannon limit, >= 1
-	DutyCycle          float64 // share of the time that makes key, 0 to 1
-	SiftedBitsPerBlock float64 // finite-size block, bits; NaN: asymptotic
-	EpsilonTotal       float64 // failure probability of a block; NaN: asymptotic
-	NeedBps            float64 // secret bits per second needed; NaN: no need
-	ToKm               float64 // end of the curve, km; NaN: the planner's choice
-	Points             float64 // distances on the curve
-	Lengthen           Lengthen
+	WindowAuto                 bool    // the planner searches the coincidence window
+	WindowPs                   float64 // full width, ps, > 0; NaN where WindowAuto
+	ClockJitterFWHMPs          float64 // FWHM of the clocks against each other, ps
+	KeyShareAuto               bool    // the planner searches the share
+	KeyBasisShare              float64 // probability of the key basis, 0.5 to 0.99; NaN where KeyShareAuto
+	ErrorCorrectionF           float64 // leak over the Shannon limit, >= 1
+	DutyCycle                  float64 // share of the time that makes key, 0 to 1
+	SiftedBitsPerBlock         float64 // finite-size block, bits; NaN: asymptotic
+	EpsilonTotal               float64 // failure probability of a block; NaN: asymptotic
+	AuthenticationBitsPerBlock float64 // secret bits a block's messages use up; NaN: asymptotic
+	NeedBps                    float64 // secret bits per second needed; NaN: not stated so (see Need)
+	AES256RenewalS             float64 // seconds after which a connection takes a new key; NaN: not stated so
+	EncryptedConnections       float64 // with AES256RenewalS
+	KeyBitsPerDay              float64 // secret bits per day needed; NaN: not stated so
+	Budget                     float64 // for all detectors, any currency; NaN: none
+	Draws, Seed                float64 // of the uncertainty
+	Measured                   Measured
+	ToKm                       float64 // end of the curve, km; NaN: the planner's choice
+	Points                     float64 // distances on the curve
+	Lengthen                   Lengthen
 
 	Deviations   []Deviation // in file order
 	Origins      []Origin    // in file order
@@ -50,6 +58,7 @@ type Scenario struct {
 
 // Source is the photon-pair source as described.
 type Source struct {
+	PumpAuto         bool    // the planner searches the pair rate up to its ceiling
 	PairRateHz       float64 // continuous: pairs per second made inside; NaN: pulsed or counted
 	PulseRateHz      float64 // pulsed: pulses per second; NaN: continuous
 	PairsPerPulse    float64 // pulsed; NaN: continuous or counted
@@ -102,6 +111,16 @@ type Detector struct {
 	Name  string
 	Class string // silicon, ingaas, superconducting, or "" where not stated
 	link.Detector
+	Price     float64 // of one piece, any currency; NaN: not stated
+	SitePrice float64 // once per end with such detectors; NaN: not stated
+}
+
+// Measured is what the running link shows; NaN where it was not stated.
+type Measured struct {
+	SinglesHz           [2]float64 // of all the arm's detectors
+	CoincidencesHz, CAR float64
+	SiftedBps           float64
+	QBERKey, QBERCheck  float64
 }
 
 // Lengthen says whose fibre grows along the distance axis.
@@ -143,6 +162,24 @@ type Change struct{ Entry, Value string }
 type Input struct {
 	Name string // as named by the person or by the scenario
 	Text string
+}
+
+// AES256Bits is the length of an AES-256 key.
+const AES256Bits = 256
+
+// SecondsPerDay turns a daily need into a rate.
+const SecondsPerDay = 86400
+
+// Need returns the secret bits per second needed, in whatever form it was
+// stated; NaN where there is no need.
+func (s *Scenario) Need() float64 {
+	switch {
+	case Stated(s.AES256RenewalS):
+		return AES256Bits * s.EncryptedConnections / s.AES256RenewalS
+	case Stated(s.KeyBitsPerDay):
+		return s.KeyBitsPerDay / SecondsPerDay
+	}
+	return s.NeedBps
 }
 
 // Stated reports whether a number was given; absent numbers are NaN.

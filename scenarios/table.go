@@ -26,14 +26,16 @@ var sourceRows = slices.Concat(emissionRows, countedRows, stateRows, lightRows)
 var emissionRows = []row{
 	{name: "source.pair_rate_hz", unit: "Hz", hi: maxRateHz, above: true, active: true, example: "4.0e+6",
 		meaning: "continuous source: pairs made per second inside it, both photons in their pass bands, before any loss",
-		refused: autoPump("max_pair_rate_hz", "pair_rate_hz"),
+		words:   []string{"auto"},
+		set:     func(s *Scenario, _ int, _ string) { s.Source.PumpAuto = true },
 		at:      func(s *Scenario, _ int) *float64 { return &s.Source.PairRateHz }},
 	{name: "source.pulse_rate_hz", unit: "Hz", hi: 1e12, above: true, example: "100.0e+6",
 		meaning: "pulsed source: pulses per second",
 		at:      func(s *Scenario, _ int) *float64 { return &s.Source.PulseRateHz }},
 	{name: "source.pairs_per_pulse", hi: 100, above: true, only: pulsed, example: "0.02",
 		meaning: "pulsed source: mean number of pairs per pulse inside it, before any loss",
-		refused: autoPump("max_pairs_per_pulse", "pairs_per_pulse"),
+		words:   []string{"auto"},
+		set:     func(s *Scenario, _ int, _ string) { s.Source.PumpAuto = true },
 		at:      func(s *Scenario, _ int) *float64 { return &s.Source.PairsPerPulse }},
 	{name: "source.schmidt_number", lo: 1, hi: 1e6, only: pulsed, example: "1.2",
 		def: "none", source: "Poisson statistics: very many modes",
@@ -46,11 +48,6 @@ var emissionRows = []row{
 	{name: "source.max_pairs_per_pulse", hi: 100, above: true, only: pulsed, example: "0.1",
 		meaning: "pulsed source: the most pairs per pulse that the pump can reach",
 		at:      func(s *Scenario, _ int) *float64 { return &s.Source.MaxPairsPerPulse }},
-}
-
-// autoPump refuses a search for the pump's setting and says what can stand.
-func autoPump(ceiling, entry string) map[string]string {
-	return map[string]string{"auto": "state " + entry + " as a number; " + ceiling + " may stand beside it"}
 }
 
 var countedRows = []row{

@@ -30,8 +30,8 @@ type asker struct {
 
 func newAsker(s *scenarios.Scenario) *asker {
 	a := &asker{s: s, setting: s.Setting()}
-	if scenarios.Stated(s.NeedBps) {
-		a.need = s.NeedBps
+	if need := s.Need(); scenarios.Stated(need) {
+		a.need = need
 	}
 	a.given = s.Source.State.Knowledge() == sources.Given
 	a.unknown = s.Source.State.Knowledge() == sources.Unknown

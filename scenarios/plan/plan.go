@@ -48,6 +48,9 @@ func (n named) answered() Case {
 	c := Case{
 		Name:             n.name,
 		Changes:          []Change{},
+		Serves:           []Serve{},
+		Elasticities:     []Elasticity{},
+		TangleNeeded:     []TangleNeeded{},
 		Lengthen:         string(n.s.Lengthen),
 		ErrorCorrectionF: n.s.ErrorCorrectionF,
 		QBERThreshold:    keyrate.Threshold(n.s.ErrorCorrectionF),

@@ -88,6 +88,7 @@ func (p *Point) setKey(r reply, finite bool) {
 	p.SiftedBps = number(r.rate.SiftedBps())
 	p.QBER = &QBER{r.rate.QBER[keyrate.KeyBasis], r.rate.QBER[keyrate.CheckBasis]}
 	p.SecretRateBps = number(r.rate.SecretBps)
+	p.KeyBasisSecretBps = number(r.rate.KeyBasisSecretBps(r.link.ErrorCorrectionF))
 	if finite {
 		p.FiniteSecretRateBps = number(r.rate.FiniteBps)
 	}

@@ -15,7 +15,10 @@ type Plan struct {
 	Warnings     []Warning   `json:"warnings"`
 	Cautions     []Caution   `json:"cautions"`
 	References   []Reference `json:"references"`
-	Cases        []Case      `json:"cases"` // the scenario as filed, then the compared ones in file order
+	Cases        []Case      `json:"cases"`   // the scenario as filed, then the compared ones in file order
+	Needs        *Needs      `json:"needs"`   // null without a need
+	Buying       *Buying     `json:"buying"`  // null where no price is stated
+	Against      *Against    `json:"against"` // null unless asked for
 }
 
 // Program names what made the plan.
@@ -73,17 +76,25 @@ type Reference struct {
 
 // Case is one scenario planned: as filed, or with the changes of a compared case.
 type Case struct {
-	Name             string     `json:"name"`
-	Changes          []Change   `json:"changes"` // empty for the scenario as filed
-	Lengthen         string     `json:"lengthen"`
-	ErrorCorrectionF float64    `json:"error_correction_f"`
-	QBERThreshold    float64    `json:"qber_threshold"` // equal QBER of both bases above which f leaves no key
-	DutyCycle        float64    `json:"duty_cycle"`
-	LossBudget       LossBudget `json:"loss_budget"`
-	Installed        Point      `json:"installed"`
-	Curve            []Point    `json:"curve"`
-	QBERParts        *QBERParts `json:"qber_parts"` // key basis, nominal state, installed; null without a state
-	Answer           Answer     `json:"answer"`
+	Name             string         `json:"name"`
+	Changes          []Change       `json:"changes"` // empty for the scenario as filed
+	Lengthen         string         `json:"lengthen"`
+	ErrorCorrectionF float64        `json:"error_correction_f"`
+	QBERThreshold    float64        `json:"qber_threshold"` // equal QBER of both bases above which f leaves no key
+	DutyCycle        float64        `json:"duty_cycle"`
+	LossBudget       LossBudget     `json:"loss_budget"`
+	Installed        Point          `json:"installed"`
+	Curve            []Point        `json:"curve"`
+	QBERParts        *QBERParts     `json:"qber_parts"` // key basis, nominal state, installed; null without a state
+	Answer           Answer         `json:"answer"`
+	Best             *Best          `json:"best"`          // null without a state
+	Limits           *Limits        `json:"limits"`        // of the scenario as filed; null elsewhere and without a state
+	Serves           []Serve        `json:"serves"`        // of the scenario as filed
+	Elasticities     []Elasticity   `json:"elasticities"`  // of the scenario as filed, the greatest first
+	TangleNeeded     []TangleNeeded `json:"tangle_needed"` // of the scenario as filed
+	Block            *Block         `json:"block"`         // null without finite_key or a state
+	Uncertainty      *Uncertainty   `json:"uncertainty"`   // of the scenario as filed; null without standard deviations
+	Acceptance       *Acceptance    `json:"acceptance"`    // of the scenario as filed; null without a state
 }
 
 // Change is one entry that a compared case sets.
@@ -153,7 +164,8 @@ type Point struct {
 	SiftedBps           *float64    `json:"sifted_bps"`
 	QBER                *QBER       `json:"qber"`
 	SecretRateBps       *float64    `json:"secret_rate_bps"`
-	FiniteSecretRateBps *float64    `json:"finite_secret_rate_bps"` // null where no block is stated
+	FiniteSecretRateBps *float64    `json:"finite_secret_rate_bps"`    // null where no block is stated
+	KeyBasisSecretBps   *float64    `json:"key_basis_secret_rate_bps"` // asymptotic, of the key basis alone
 	UsableRateBps       *float64    `json:"usable_rate_bps"`
 	Bounds              *Bounds     `json:"bounds"`
 }

@@ -155,10 +155,20 @@ func (a *asker) restsOn() string {
 	} else {
 		parts = append(parts, "the asymptotic rate, without finite-size effects")
 	}
-	if n := len(a.s.DefaultsUsed); n > 0 {
-		parts = append(parts, fmt.Sprintf("%d entries at their defaults", n))
+	if n := a.figuresByDefault(); n > 0 {
+		parts = append(parts, fmt.Sprintf("%d figures at their defaults", n))
 	}
 	return "Rests on " + strings.Join(parts, "; ") + "."
+}
+
+// figuresByDefault counts what the file leaves out of the link itself.
+func (a *asker) figuresByDefault() (n int) {
+	for _, d := range a.s.DefaultsUsed {
+		if !strings.HasPrefix(d.Entry, "distance.") && !strings.HasPrefix(d.Entry, "uncertainty.") {
+			n++
+		}
+	}
+	return n
 }
 
 // partWords are the parts of a link as people call them.
