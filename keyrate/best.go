@@ -18,6 +18,8 @@ const (
 	nearFactor     = 2  // how far that one looks
 	mostSweeps     = 12
 	leastGain      = 1e-6 // relative; a sweep that gains less is the last
+	smallLag       = 0.3  // of the secret fractions: the sum of both then has the highest peak
+	farthestStep   = 8    // how many sweeps further it looks in the direction of the last
 )
 
 // Free says which settings are left to a search; the others stay.
@@ -28,19 +30,26 @@ type Free struct {
 }
 
 // Best returns p with the free settings that make most usable key, each
-// rounded to three digits (the window in ps). A window is at least 1 ps, at
+// rounded to three digits (the window in ps), but for a pump at its ceiling. A
+// window is at least 1 ps, at
 // most the period of a pulsed source, and 1 ps without any arrival spread.
-// Where no block has a key, the settings are those of the asymptotic rate and
-// the share stays; where there is none at all, those that come nearest.
+// Where no block has a key, the settings are those of the asymptotic rate with
+// even shares; where there is none at all, those that come nearest.
 func (l *Link) Best(p OperatingPoint, free Free) OperatingPoint {
-	found, worth := l.ascend(p, free, l.BlockBits > 0)
-	if worth <= 0 && l.BlockBits > 0 {
-		only := free
-		only.KeyShare = false
-		found, _ = l.ascend(p, only, false)
+	var found OperatingPoint
+	worth := 0.0
+	if l.BlockBits > 0 {
+		found, worth = l.ascend(p, free, blockKey)
+	}
+	if worth <= 0 {
+		if l.BlockBits > 0 && free.KeyShare {
+			free.KeyShare, p.KeyShare = false, evenShare
+		}
+		found = l.bestAsymptotic(p, free)
 	}
 	if free.MaxPairRateHz > 0 {
-		found.PairRateHz = Round3(found.PairRateHz, free.MaxPairRateHz)
+		// The ceiling is a figure that a person stated, and can set.
+		found.PairRateHz = min(Round3(found.PairRateHz, math.Inf(1)), free.MaxPairRateHz)
 	}
 	if free.Window {
 		found.WindowS = Round3(found.WindowS*psPerSecond, l.widestWindowPs()) / psPerSecond
@@ -51,12 +60,52 @@ func (l *Link) Best(p OperatingPoint, free Free) OperatingPoint {
 	return found
 }
 
+// bestAsymptotic climbs the asymptotic rate. It is the greatest of the signed
+// rates of the key basis, of the check basis and of both, each of which is
+// smooth where the rate itself has kinks that a climb gets caught in. With
+// even shares the key basis has the greater fraction, and is asked alone only
+// where the check basis lags behind.
+func (l *Link) bestAsymptotic(p OperatingPoint, free Free) OperatingPoint {
+	even := p.KeyShare == evenShare && !free.KeyShare
+	if even && l.StateError[KeyBasis] == l.StateError[CheckBasis] {
+		found, _ := l.ascend(p, free, bothBases)
+		return found
+	}
+	found, most := l.ascend(p, free, signedSum)
+	goals := []goal{keyBasisAlone, checkBasisAlone}
+	if even {
+		goals = goals[:1]
+		if l.lag(found) < smallLag {
+			return found
+		}
+	}
+	for _, goal := range goals {
+		if at, worth := l.ascend(p, free, goal); worth > most {
+			found, most = at, worth
+		}
+	}
+	return found
+}
+
+// lag returns how far the check basis's secret fraction lies below the key
+// basis's, as a share of it.
+func (l *Link) lag(p OperatingPoint) float64 {
+	r := l.Key(p)
+	key := SecretFraction(r.QBER[KeyBasis], r.QBER[CheckBasis], l.ErrorCorrectionF)
+	check := SecretFraction(r.QBER[CheckBasis], r.QBER[KeyBasis], l.ErrorCorrectionF)
+	if key <= 0 {
+		return math.Inf(1)
+	}
+	return (key - check) / key
+}
+
 // BestWindow is Best with the window free alone.
 func (l *Link) BestWindow(p OperatingPoint) OperatingPoint { return l.Best(p, Free{Window: true}) }
 
-// ascend climbs along one setting after the other until a sweep gains nothing.
-func (l *Link) ascend(p OperatingPoint, free Free, finite bool) (OperatingPoint, float64) {
-	a := ascent{l, free, finite, p, math.Inf(-1)}
+// ascend climbs along one setting after the other, and on in the direction of
+// the whole sweep, until a sweep gains nothing.
+func (l *Link) ascend(p OperatingPoint, free Free, g goal) (OperatingPoint, float64) {
+	a := ascent{l, free, g, p, math.Inf(-1)}
 	if free.MaxPairRateHz > 0 {
 		a.at.PairRateHz = free.MaxPairRateHz
 	}
@@ -68,12 +117,15 @@ func (l *Link) ascend(p OperatingPoint, free Free, finite bool) (OperatingPoint,
 		return a.at, a.worth
 	}
 	for sweep := range mostSweeps {
-		before := a.worth
+		before, start := a.worth, a.at
 		a.pump(sweep == 0)
 		a.window(sweep == 0)
 		a.ridge(sweep == 0)
 		a.share(sweep == 0)
-		if a.worth-before <= leastGain*math.Abs(before) {
+		if sweep > 0 {
+			a.onward(start)
+		}
+		if sweep > 0 && a.worth-before <= leastGain*math.Abs(before) {
 			break
 		}
 	}
@@ -82,11 +134,11 @@ func (l *Link) ascend(p OperatingPoint, free Free, finite bool) (OperatingPoint,
 
 // ascent is a climb: where it stands, and what that is worth.
 type ascent struct {
-	link   *Link
-	free   Free
-	finite bool
-	at     OperatingPoint
-	worth  float64
+	link  *Link
+	free  Free
+	goal  goal
+	at    OperatingPoint
+	worth float64
 }
 
 // move takes a line search's result where it is better.
@@ -106,7 +158,7 @@ func (a *ascent) line(x, lo, hi float64, wide bool, path func(float64) Operating
 	x, worth := maximise(lo, hi, grid, func(x float64) float64 {
 		p := path(x)
 		v := a.link.view(p)
-		return v.worth(p.WindowS, a.finite)
+		return v.worth(p.WindowS, a.goal)
 	})
 	a.move(path(x), worth)
 }
@@ -133,7 +185,7 @@ func (a *ascent) window(wide bool) {
 		lo, hi, grid = max(lo, ps/nearFactor), min(hi, ps*nearFactor), nearGrid
 	}
 	v := a.link.view(a.at)
-	ps, worth := maximise(lo, hi, grid, func(ps float64) float64 { return v.worth(ps/psPerSecond, a.finite) })
+	ps, worth := maximise(lo, hi, grid, func(ps float64) float64 { return v.worth(ps/psPerSecond, a.goal) })
 	p := a.at
 	p.WindowS = ps / psPerSecond
 	a.move(p, worth)
@@ -168,6 +220,29 @@ func (a *ascent) share(wide bool) {
 	}
 }
 
+// onward looks further in the direction in which a sweep has moved.
+func (a *ascent) onward(start OperatingPoint) {
+	if start == a.at {
+		return
+	}
+	end := a.at
+	step := func(from, to, t float64) float64 { return to * math.Pow(to/from, t) }
+	most, widest := a.free.MaxPairRateHz, a.link.widestWindowPs()/psPerSecond
+	a.line(1, 1.0/farthestStep, farthestStep, true, func(t float64) OperatingPoint {
+		p := end
+		if most > 0 {
+			p.PairRateHz = min(most, step(start.PairRateHz, end.PairRateHz, t))
+		}
+		if a.free.Window {
+			p.WindowS = max(min(leastWindowPs/psPerSecond, widest), min(widest, step(start.WindowS, end.WindowS, t)))
+		}
+		if a.free.KeyShare {
+			p.KeyShare = max(evenShare, min(mostShare, step(start.KeyShare, end.KeyShare, t)))
+		}
+		return p
+	})
+}
+
 // widestWindowPs bounds the search for a window.
 func (l *Link) widestWindowPs() float64 {
 	if l.PulseRateHz == 0 {
@@ -180,27 +255,4 @@ func (l *Link) widestWindowPs() float64 {
 // sharePerWindow returns w/τ of a continuous link.
 func (l *Link) sharePerWindow(windowS float64) float64 {
 	return link.WindowShare(windowS*psPerSecond, l.SpreadFWHMPs) / windowS
-}
-
-// worth is what a search climbs: the secret rate where there is key, and
-// otherwise how far the better basis is from one. (The signed rate has false
-// peaks where nothing is sifted.) Whole bits would be stairs, so a block's
-// key is not floored here.
-func (v *view) worth(windowS float64, finite bool) float64 {
-	var r Rate
-	v.key(windowS, &r)
-	l := v.link
-	if finite {
-		b := l.Split(&r)
-		if bits := b.SecretBits() - l.AuthenticationBits; bits > 0 {
-			return bits / l.BlockBits * r.SiftedBps()
-		} else {
-			return bits / l.BlockBits
-		}
-	}
-	if r.SecretBps > 0 {
-		return r.SecretBps
-	}
-	key, check, f := r.QBER[KeyBasis], r.QBER[CheckBasis], l.ErrorCorrectionF
-	return min(0, max(SecretFraction(key, check, f), SecretFraction(check, key, f)))
 }

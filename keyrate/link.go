@@ -18,7 +18,7 @@ type Arm struct {
 // copy it, edit it, ask again.
 type Link struct {
 	PulseRateHz        float64    // pulses per second; 0: continuous
-	Modes              float64    // Schmidt modes per polarisation, ≥ 1; +Inf: Poisson
+	Modes              float64    // Schmidt modes per polarisation, ≥ 1; +Inf: Poisson, as every continuous source is
 	StateError         [2]float64 // error of a lone pair in the key and the check basis
 	Arms               [2]Arm
 	SpreadFWHMPs       float64 // continuous: spread of the difference of the arrival times

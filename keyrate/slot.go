@@ -27,8 +27,10 @@ type exponents struct {
 // Each slot holds two squeezed modes of polarisation, M Schmidt modes each.
 // Double clicks give a random bit (squashing). It is exact within that model
 // and holds 1e-14 relative accuracy at any loss. With M = 1 it is the gain and
-// error of [1] with μ = 2λ (to first order in dark counts); Poisson at low
-// occupancy it is the continuous-wave model of [2].
+// error of [1] with μ = 2λ (to first order in dark counts; at e > 0 only within
+// some 0.3 %, since [1] turns single pairs); Poisson at low occupancy it is the
+// continuous-wave model of [2]. Share counts for Poissonian pairs only: thermal
+// ones are pulsed.
 //
 // [1] Ma et al., PRA 76, 012307 (2007).
 // [2] Neumann et al., PRA 104, 022406 (2021).
