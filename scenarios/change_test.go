@@ -20,7 +20,8 @@ func TestChangeIsAsIfEdited(t *testing.T) {
 	}{
 		"a number": {errBase, []Change{{"arms.bob.length_km", "12 +- 0.5"}}, replaced(t, "length_km: 6.2", "length_km: 12 +- 0.5")},
 		"a new entry": {
-			errBase, []Change{{"window_ps", "500"}, {"arms.alice.splices", "3"}},
+			errBase,
+			[]Change{{"window_ps", "500"}, {"arms.alice.splices", "3"}},
 			replaced(t, "length_km: 0.05", "splices: 3\n    length_km: 0.05") + "window_ps: 500\n",
 		},
 		"a group": {errBase, []Change{{"source.state", "{ fidelity: 0.95, measured_car: 30 }"}}, replaced(t, "tangle: 0.86", "{ fidelity: 0.95, measured_car: 30 }")},
@@ -50,7 +51,8 @@ func TestChangeIsAsIfEdited(t *testing.T) {
 			replaced(t, "length_km: 6.2", "length_km: 6.2\n    splices: 2"),
 		},
 		"Bob's bandwidth": {
-			errBase, []Change{{"source.bandwidth_fwhm_nm.bob", "0.4"}},
+			errBase,
+			[]Change{{"source.bandwidth_fwhm_nm.bob", "0.4"}},
 			replaced(t, "bandwidth_fwhm_nm: 0.8", "bandwidth_fwhm_nm: { alice: 0.8, bob: 0.4 }"),
 		},
 		"both bandwidths in one": {

@@ -81,8 +81,10 @@ func parseTree(file string, data []byte) (*node, Errors) {
 	}
 	second, err := decode(decoder)
 	if err == nil {
-		return nil, Errors{{file, second.Line, second.Column, "", "a second document begins here",
-			"a file holds one scenario; compare: holds its variants"}}
+		return nil, Errors{{
+			file, second.Line, second.Column, "", "a second document begins here",
+			"a file holds one scenario; compare: holds its variants",
+		}}
 	}
 	if !errors.Is(err, io.EOF) {
 		return nil, Errors{yamlError(file, data, err)}
@@ -93,8 +95,10 @@ func parseTree(file string, data []byte) (*node, Errors) {
 		return nil, g.errs
 	}
 	if root.kind != mapping {
-		return nil, Errors{{file, root.at.line, root.at.column, "", "the file is " + root.kind.String() + ", not a mapping of entries",
-			"it begins with an entry such as title: My link; pairspan new prints an example"}}
+		return nil, Errors{{
+			file, root.at.line, root.at.column, "", "the file is " + root.kind.String() + ", not a mapping of entries",
+			"it begins with an entry such as title: My link; pairspan new prints an example",
+		}}
 	}
 	return root, nil
 }

@@ -204,9 +204,12 @@ func TestCancellingDispersion(t *testing.T) {
 // in all of them, with its pump at the ceiling.
 func TestInTheWay(t *testing.T) {
 	good := []set{
-		{"arms.alice.detector", "nanowire"}, {"arms.bob.detector", "nanowire"},
-		{"arms.alice.fixed_loss_db", "1"}, {"arms.bob.fixed_loss_db", "1"},
-		{"source.state.tangle", "0.98"}, {"source.max_pair_rate_hz", "2.0e+6"},
+		{"arms.alice.detector", "nanowire"},
+		{"arms.bob.detector", "nanowire"},
+		{"arms.alice.fixed_loss_db", "1"},
+		{"arms.bob.fixed_loss_db", "1"},
+		{"source.state.tangle", "0.98"},
+		{"source.max_pair_rate_hz", "2.0e+6"},
 	}
 	for _, row := range []struct {
 		part    string

@@ -37,6 +37,8 @@ func listPaths(b *strings.Builder, t reflect.Type, path string) {
 		listPaths(b, t.Elem(), path+"[]")
 	case reflect.String:
 		fmt.Fprintf(b, "%s string%s\n", path, null)
+	case reflect.Bool:
+		fmt.Fprintf(b, "%s true or false%s\n", path, null)
 	case reflect.Int, reflect.Float64:
 		fmt.Fprintf(b, "%s number%s\n", path, null)
 	default:

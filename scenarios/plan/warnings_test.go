@@ -38,8 +38,11 @@ var doubtful = []struct {
 	{"light-and-glass", "arms.bob.loss_db_per_km", []set{{"source.wavelength_nm", "{ alice: 1550, bob: 810 }"}, {"arms.bob.loss_db_per_km", "0.3"}}, true},
 	{"light-and-glass", "detectors.free_running.efficiency", []set{{"detectors.free_running.class", "silicon"}, {"detectors.free_running.efficiency", "0.6"}}, true},
 	{"light-and-glass", "detectors.free_running.efficiency", []set{
-		{"detectors.free_running.class", "ingaas"}, {"detectors.free_running.efficiency", "0.6"},
-		{"source.wavelength_nm", "{ alice: 810, bob: 810 }"}, {"arms.alice.loss_db_per_km", "3"}, {"arms.bob.loss_db_per_km", "3"},
+		{"detectors.free_running.class", "ingaas"},
+		{"detectors.free_running.efficiency", "0.6"},
+		{"source.wavelength_nm", "{ alice: 810, bob: 810 }"},
+		{"arms.alice.loss_db_per_km", "3"},
+		{"arms.bob.loss_db_per_km", "3"},
 	}, true},
 	{"splitter-as-loss", "arms.alice.fixed_loss_db", []set{{"arms.alice.fixed_loss_db", "3.0"}}, true},
 }

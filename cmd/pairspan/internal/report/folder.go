@@ -1,0 +1,58 @@
+package report
+
+import (
+	"bytes"
+	"fmt"
+	"io"
+	"os"
+	"path/filepath"
+
+	"pairspan/scenarios/plan"
+)
+
+// Page is the name of the report in its folder.
+const Page = "report.html"
+
+// files are what a folder of results holds.
+var files = []struct {
+	name  string
+	write func(io.Writer, *plan.Plan) error
+}{{"plan.json", JSON}, {"curve.csv", CSV}, {Page, HTML}}
+
+// Folder writes plan.json, curve.csv and report.html into dir, which is made
+// where missing. Each is written beside its place and then renamed, the old
+// ones staying whole until all are written.
+func Folder(dir string, p *plan.Plan) (err error) {
+	if err := os.MkdirAll(dir, 0o755); err != nil {
+		return err
+	}
+	var written []string
+	defer func() {
+		if err != nil {
+			for _, name := range written {
+				os.Remove(name)
+			}
+		}
+	}()
+	for _, f := range files {
+		// What cannot be replaced is found before anything is.
+		if info, err := os.Stat(filepath.Join(dir, f.name)); err == nil && info.IsDir() {
+			return fmt.Errorf("%s: a folder stands where the file belongs", filepath.Join(dir, f.name))
+		}
+		var b bytes.Buffer
+		if err := f.write(&b, p); err != nil {
+			return fmt.Errorf("%s: %w", f.name, err)
+		}
+		beside := filepath.Join(dir, "."+f.name+".part")
+		written = append(written, beside)
+		if err := os.WriteFile(beside, b.Bytes(), 0o644); err != nil {
+			return err
+		}
+	}
+	for i, f := range files {
+		if err := os.Rename(written[i], filepath.Join(dir, f.name)); err != nil {
+			return err
+		}
+	}
+	return nil
+}

@@ -1,0 +1,125 @@
+package main
+
+import (
+	"bytes"
+	"fmt"
+	"io"
+	"path/filepath"
+	"strings"
+
+	"github.com/spf13/cobra"
+
+	"pairspan/cmd/pairspan/internal/report"
+	"pairspan/scenarios"
+	"pairspan/scenarios/plan"
+)
+
+// formats are what can go to standard output.
+var formats = []struct {
+	name  string
+	write func(io.Writer, *plan.Plan) error
+}{{"text", report.Text}, {"json", report.JSON}, {"csv", report.CSV}}
+
+// output is where a plan goes.
+type output struct{ dir, format string }
+
+func (o *output) flags(cmd *cobra.Command) {
+	cmd.Flags().StringVar(&o.dir, "out", "", "also write report.html, plan.json and curve.csv into this folder")
+	cmd.Flags().StringVar(&o.format, "format", "text", "what goes to standard output: "+formatNames())
+}
+
+func formatNames() string {
+	var names []string
+	for _, f := range formats {
+		names = append(names, f.name)
+	}
+	return strings.Join(names, ", ")
+}
+
+// writer finds the writer of the chosen format, before any work is done.
+func (o *output) writer() (func(io.Writer, *plan.Plan) error, error) {
+	for _, f := range formats {
+		if f.name == o.format {
+			return f.write, nil
+		}
+	}
+	return nil, fmt.Errorf("--format %q is not one of %s", o.format, formatNames())
+}
+
+func (c *commands) planCommand() *cobra.Command {
+	var o output
+	cmd := &cobra.Command{
+		Use:     "plan FILE",
+		Short:   "Say whether a scenario's link meets its need, by how much, and what stands in the way",
+		Example: "  pairspan plan link.yaml\n  pairspan plan link.yaml --out report --format csv > curve.csv",
+		Args:    oneFile,
+		RunE: func(cmd *cobra.Command, args []string) error {
+			return c.plan(cmd, o, func() (*scenarios.Scenario, error) { return scenarios.Load(args[0]) })
+		},
+	}
+	o.flags(cmd)
+	return cmd
+}
+
+func (c *commands) demoCommand() *cobra.Command {
+	var o output
+	cmd := &cobra.Command{
+		Use:   "demo",
+		Short: "Plan a scenario that is built in: an invented campus, three candidate detectors",
+		Args:  cobra.NoArgs,
+		RunE: func(cmd *cobra.Command, _ []string) error {
+			return c.plan(cmd, o, func() (*scenarios.Scenario, error) {
+				return scenarios.LoadFS(scenarios.Examples, "demo.yaml")
+			})
+		},
+	}
+	o.flags(cmd)
+	return cmd
+}
+
+// plan reads, plans, writes the folder and then standard output.
+func (c *commands) plan(cmd *cobra.Command, o output, load func() (*scenarios.Scenario, error)) error {
+	write, err := o.writer()
+	if err != nil {
+		return err
+	}
+	s, err := load()
+	if err != nil {
+		return err
+	}
+	p, err := plan.New(cmd.Context(), s, version, progress(c.errs))
+	if err != nil {
+		return err
+	}
+	var b bytes.Buffer // whole or not at all
+	if err := write(&b, p); err != nil {
+		return outputError{err}
+	}
+	if o.dir != "" {
+		if err := report.Folder(o.dir, p); err != nil {
+			return outputError{err}
+		}
+		fmt.Fprintln(c.errs, "Report: "+filepath.Join(o.dir, report.Page))
+	}
+	if _, err := c.out.Write(b.Bytes()); err != nil {
+		return outputError{err}
+	}
+	c.status = status(p.Cases[0].Answer.Outcome)
+	return nil
+}
+
+// status turns the answer of the scenario as filed into an exit status.
+func status(o plan.Outcome) int {
+	if o == plan.Met || o == plan.NoNeed {
+		return statusYes
+	}
+	return statusNo
+}
+
+// oneFile asks for exactly one scenario file.
+func oneFile(cmd *cobra.Command, args []string) error {
+	if len(args) != 1 {
+		return fmt.Errorf("%s takes one scenario file, not %d; pairspan new prints one to start from", cmd.CommandPath(), len(args))
+	}
+	return nil
+}
