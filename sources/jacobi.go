@@ -55,25 +55,11 @@ func sortedEigen(values [4]float64, vectors [4][4]complex128) ([4]float64, [4][4
 	return values, vectors
 }
 
-// singularValues returns the singular values of m, largest first, by one-sided
-// Jacobi: the columns are turned until all are orthogonal, and their lengths
-// are the singular values. Small ones keep their digits, which they would lose
-// as square roots of the eigenvalues of m†m. It makes no allocation.
+// singularValues returns the singular values of m, largest first: the lengths of
+// its columns once they are orthogonal. Small ones keep their digits, which they
+// would lose as square roots of the eigenvalues of m†m. It makes no allocation.
 func singularValues(m [4][4]complex128) (values [4]float64) {
-	for sweep, turned := 0, true; turned && sweep < maxSweeps; sweep++ {
-		turned = false
-		for p := range 3 {
-			for q := p + 1; q < 4; q++ {
-				pp, qq, pq := columnProducts(&m, p, q)
-				if cmplx.Abs(pq) <= 1e-15*math.Sqrt(pp*qq) {
-					continue
-				}
-				turned = true
-				r := rotationFor(pp, qq, pq)
-				r.turnColumns(&m, p, q)
-			}
-		}
-	}
+	orthogonalColumns(&m, nil, 1e-15)
 	for j := range values {
 		square, _, _ := columnProducts(&m, j, j)
 		values[j] = math.Sqrt(square)
@@ -81,6 +67,29 @@ func singularValues(m [4][4]complex128) (values [4]float64) {
 	slices.Sort(values[:])
 	slices.Reverse(values[:])
 	return values
+}
+
+// orthogonalColumns turns the columns of m until their products are within the
+// tolerance of 0, relative to their lengths, and those of v, if any, alike:
+// one-sided Jacobi. Columns that are orthogonal already stay as they are.
+func orthogonalColumns(m, v *[4][4]complex128, tolerance float64) {
+	for sweep, turned := 0, true; turned && sweep < maxSweeps; sweep++ {
+		turned = false
+		for p := range 3 {
+			for q := p + 1; q < 4; q++ {
+				pp, qq, pq := columnProducts(m, p, q)
+				if cmplx.Abs(pq) <= tolerance*math.Sqrt(pp*qq) {
+					continue
+				}
+				turned = true
+				r := rotationFor(pp, qq, pq)
+				r.turnColumns(m, p, q)
+				if v != nil {
+					r.turnColumns(v, p, q)
+				}
+			}
+		}
+	}
 }
 
 // columnProducts returns the squared lengths of columns p and q of m and their

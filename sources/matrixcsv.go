@@ -26,11 +26,11 @@ const matrixOrder = "rows and columns count from 0 in the order HH, HV, VH, VV"
 func ReadDensityMatrix(r io.Reader) ([4][4]complex128, error) {
 	var raw [4][4]complex128
 	var lines [4][4]int // where each entry stands, 0 if nowhere
-	rows, err := readTable(r, matrixForm)
+	table, err := readTable(r, matrixForm)
 	if err != nil {
 		return raw, err
 	}
-	for _, cells := range rows {
+	for _, cells := range table.rows {
 		i, j, x, err := matrixEntry(cells)
 		if err != nil {
 			return [4][4]complex128{}, err
@@ -81,8 +81,10 @@ func completed(raw [4][4]complex128, lines [4][4]int) ([4][4]complex128, error) 
 		}
 	}
 	if len(missing) > 0 {
-		return [4][4]complex128{}, &CSVError{Problem: "entries are missing (row,col): " + strings.Join(missing, " "),
-			Hint: "give all sixteen, or the ten of the upper triangle (col not below row)"}
+		return [4][4]complex128{}, &CSVError{
+			Problem: "entries are missing (row,col): " + strings.Join(missing, " "),
+			Hint:    "give all sixteen, or the ten of the upper triangle (col not below row)",
+		}
 	}
 	return raw, nil
 }
