@@ -29,6 +29,7 @@ var stateKinds = []struct {
 	{"source.state.fidelity", sources.FidelityKind},
 	{"source.state.visibility", sources.VisibilityKind},
 	{"source.state.density_matrix", sources.DensityMatrixKind},
+	{"source.state.counts", sources.DensityMatrixKind},
 }
 
 // missing finds the required entries and groups that are not stated.
@@ -69,7 +70,7 @@ func (r *reader) check() {
 	r.checkArms()
 	r.checkWindow()
 	r.checkNeed()
-	r.readMatrix()
+	r.readLaboratory()
 	if len(r.errs) > 0 {
 		return
 	}

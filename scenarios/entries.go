@@ -49,7 +49,6 @@ type row struct {
 	meaning     string                                      // one sentence
 	hint        string                                      // for a value outside the range
 	words       []string                                    // of a choice, or accepted instead of a number
-	refused     map[string]string                           // words that mean nothing yet, and what to state instead
 	at          func(*Scenario, int) *float64               // where a number lives; nil where the scenario has no such number
 	set         func(s *Scenario, i int, text string)       // stores what is not a number
 	example     string                                      // for the starting file

@@ -173,10 +173,6 @@ func (r *reader) value(l stated) {
 // number reads a number, or one of the words that may stand for it.
 func (r *reader) number(l stated) {
 	n, e := l.node, l.row
-	if hint, is := e.refused[n.text]; is {
-		r.fail(l.name, n.at, show(n.text)+" does not exist here yet", hint)
-		return
-	}
 	if slices.Contains(e.words, n.text) {
 		e.set(r.s, l.i, n.text)
 		return

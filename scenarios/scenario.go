@@ -68,8 +68,9 @@ type Source struct {
 	MaxPairsPerPulse float64 // ceiling of a pulsed source; NaN: not stated
 
 	State           sources.State
-	MeasuredCAR     float64    // coincidences to accidentals left in the state; NaN: taken out
-	UnpairedHz      [2]float64 // light without a partner, photons/s before any loss
+	Counts          *sources.Counts // of the tomography that gave the state; nil without one
+	MeasuredCAR     float64         // coincidences to accidentals left in the state; NaN: taken out
+	UnpairedHz      [2]float64      // light without a partner, photons/s before any loss
 	WavelengthNm    [2]float64
 	PumpPulseFWHMPs float64
 	BandwidthFWHMNm [2]float64 // Bob's is NaN where it follows by energy conservation

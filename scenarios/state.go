@@ -26,37 +26,57 @@ func (r *reader) takeOutAccidentals() {
 	}
 }
 
-const matrixEntry = "source.state.density_matrix"
+// laboratoryFiles are the entries that name a file of the laboratory, with
+// what reads it into the scenario.
+var laboratoryFiles = []struct {
+	entry string
+	read  func(r *reader, entry string, data []byte) error
+}{
+	{"source.state.density_matrix", (*reader).matrix},
+	{"source.state.counts", (*reader).counts},
+}
 
-// readMatrix reads the density matrix, where the scenario names one.
-func (r *reader) readMatrix() {
-	n := r.stated[matrixEntry]
-	if n == nil || n.kind != scalar || strings.TrimSpace(n.text) == "" {
-		return
-	}
-	name, problem, hint := inside(n.text)
-	if problem != "" {
-		r.fail(matrixEntry, n.at, problem, hint)
-		return
-	}
-	data, trouble := r.files.get(name)
-	if trouble != nil {
-		r.fail(matrixEntry, n.at, show(n.text)+": "+trouble.problem, trouble.hint)
-		return
-	}
-	plain, trouble := plainText(data)
-	if trouble != nil {
-		r.errs = append(r.errs, Error{r.files.shown(name), trouble.at.line, trouble.at.column, matrixEntry, trouble.problem, trouble.hint})
-		return
-	}
-	r.s.Inputs = append(r.s.Inputs, Input{n.text, string(data)})
-	if err := r.matrix(plain); err != nil {
-		r.laboratory(name, err)
+// readLaboratory reads the laboratory files that the scenario names.
+func (r *reader) readLaboratory() {
+	for _, f := range laboratoryFiles {
+		name, data := r.file(f.entry)
+		if data == nil {
+			continue
+		}
+		if err := f.read(r, f.entry, data); err != nil {
+			r.laboratory(f.entry, name, err)
+		}
 	}
 }
 
+// file returns the text of the file that an entry names; nil where there is
+// none, or where it could not be read, which is an error.
+func (r *reader) file(entry string) (name string, text []byte) {
+	n := r.stated[entry]
+	if n == nil || n.kind != scalar || strings.TrimSpace(n.text) == "" {
+		return "", nil
+	}
+	name, problem, hint := inside(n.text)
+	if problem != "" {
+		r.fail(entry, n.at, problem, hint)
+		return "", nil
+	}
+	data, trouble := r.files.get(name)
+	if trouble != nil {
+		r.fail(entry, n.at, show(n.text)+": "+trouble.problem, trouble.hint)
+		return "", nil
+	}
+	plain, trouble := plainText(data)
+	if trouble != nil {
+		r.errs = append(r.errs, Error{r.files.shown(name), trouble.at.line, trouble.at.column, entry, trouble.problem, trouble.hint})
+		return "", nil
+	}
+	r.s.Inputs = append(r.s.Inputs, Input{n.text, string(data)})
+	return name, plain
+}
+
 // matrix stores the state of a density matrix, and how it was mended.
-func (r *reader) matrix(data []byte) error {
+func (r *reader) matrix(entry string, data []byte) error {
 	raw, err := sources.ReadDensityMatrix(bytes.NewReader(data))
 	if err != nil {
 		return err
@@ -67,14 +87,34 @@ func (r *reader) matrix(data []byte) error {
 	}
 	r.s.Source.State = sources.FromDensityMatrix(rho)
 	if mending.Any() {
-		r.s.Repairs = append(r.s.Repairs, Repair{stateMended, matrixEntry, "the density matrix was not one of a state: " + mending.Sentence()})
+		r.s.Repairs = append(r.s.Repairs, Repair{stateMended, entry, "the density matrix was not one of a state: " + mending.Sentence()})
+	}
+	return nil
+}
+
+const stateFitsBadly = "state-fits-badly" // the rule of the warning
+
+// counts stores the likeliest state of a tomography's counts.
+func (r *reader) counts(entry string, data []byte) error {
+	c, err := sources.ReadCounts(bytes.NewReader(data))
+	if err != nil {
+		return err
+	}
+	fit, err := c.MaximumLikelihood()
+	if err != nil {
+		return err
+	}
+	r.s.Source.State = sources.FromDensityMatrix(fit.Rho)
+	r.s.Source.Counts = &c
+	if warning := fit.Warning(); warning != "" {
+		r.s.Repairs = append(r.s.Repairs, Repair{stateFitsBadly, entry, warning})
 	}
 	return nil
 }
 
 // laboratory reports an error in a laboratory file at its place there.
-func (r *reader) laboratory(name string, err error) {
-	e := Error{File: r.files.shown(name), Line: 1, Column: 1, Entry: matrixEntry}
+func (r *reader) laboratory(entry, name string, err error) {
+	e := Error{File: r.files.shown(name), Line: 1, Column: 1, Entry: entry}
 	e.Problem, e.Hint = cutHint(err)
 	var at *sources.CSVError
 	if errors.As(err, &at) {

@@ -126,6 +126,11 @@ var stateRows = []row{
 		set:     func(*Scenario, int, string) {},
 	}, // read with the other files, at the end
 	{
+		name: "source.state.counts", form: fileForm, example: "counts.csv",
+		meaning: "a CSV file of a tomography's counts, whose likeliest state is used: alice,bob,counts with letters H V D A R L, or wave-plate angles",
+		set:     func(*Scenario, int, string) {},
+	},
+	{
 		name: "source.state.measured_car", hi: 1e9, above: true, example: "38",
 		meaning: "coincidences to accidentals when the state was measured, if accidentals were left in: they are taken out",
 		at:      func(s *Scenario, _ int) *float64 { return &s.Source.MeasuredCAR },

@@ -40,7 +40,7 @@ var leftOut = regexp.MustCompile(`^( *)#( *[a-z_]+:.*)$`)
 // it, states that entry at the right place: it is known there, and what may
 // be wrong is only what it cannot stand beside.
 func TestStarterCanBeUncommented(t *testing.T) {
-	files := fstest.MapFS{"state.csv": {Data: []byte(bellCSV)}}
+	files := fstest.MapFS{"state.csv": {Data: []byte(bellCSV)}, "counts.csv": {Data: []byte(bellCounts)}}
 	lines := strings.Split(Starter(), "\n")
 	n := 0
 	for i, line := range lines {
@@ -69,3 +69,8 @@ func TestStarterCanBeUncommented(t *testing.T) {
 		t.Errorf("only %d entries are left out", n)
 	}
 }
+
+// bellCounts are what a Bell state gives at the sixteen pairs of H, V, D and R.
+const bellCounts = "alice,bob,counts\n" +
+	"H,H,500\nH,V,0\nH,D,250\nH,R,250\nV,H,0\nV,V,500\nV,D,250\nV,R,250\n" +
+	"D,H,250\nD,V,250\nD,D,500\nD,R,250\nR,H,250\nR,V,250\nR,D,250\nR,R,0\n"

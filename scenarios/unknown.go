@@ -5,20 +5,11 @@ import (
 	"strings"
 )
 
-// later are entries that people may expect and that do not exist yet, with
-// what to state instead.
-var later = map[string]string{
-	"source.state.counts": "state tangle, concurrence, fidelity, visibility or density_matrix",
-}
-
 // unknown reports a name that the table does not have, and guesses what was
 // meant.
 func (r *reader) unknown(group string, m member) {
-	full := join(group, m.key)
 	name := join(group, escape(shorten(m.key)))
-	switch hint, is := later[full]; {
-	case is:
-		r.fail(name, m.at, "this entry does not exist yet", hint)
+	switch {
 	case group == "detectors":
 		r.fail(name, m.at, show(m.key)+" cannot be a detector's name", "a name is lower-case letters, digits, _ and -, a letter first")
 	case len(r.errs) > maxErrors: // each hint compares the name with all others

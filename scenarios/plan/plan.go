@@ -32,6 +32,7 @@ func New(ctx context.Context, s *scenarios.Scenario, version string, progress fu
 	if err := addCurves(ctx, p, s, asked, progress); err != nil {
 		return nil, err
 	}
+	p.Cases[0].Acceptance = asked[0].acceptance()
 	p.Warnings = warnings(asked)
 	return p, nil
 }

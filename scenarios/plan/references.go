@@ -14,11 +14,12 @@ var references = []Reference{
 	{"dead-time", "Knoll, Radiation Detection and Measurement, ch. 4: non-paralysable dead time."},
 	{"asymptotic-key", "Shor, Preskill, PRL 85, 441 (2000); Koashi, Preskill, PRL 90, 057902 (2003): secret fraction from bit and phase error."},
 	{"finite-key", "Lim et al., PRL 126, 100501 (2021): finite-size key of a block with separate basis errors."},
+	{"bell", "Horodecki et al., PLA 200, 340 (1995): the greatest CHSH value of a two-qubit state."},
 }
 
 // cautions are said with every plan.
 var cautions = []Caution{
 	{"trust", "A planned key rate is an estimate, not a security claim: it presumes honest devices that do what this model says, and says nothing of side channels. Keys that matter take certified devices and an assessment of the whole system."},
-	{"light", "Pump and alignment lasers and fibres in service may carry invisible laser radiation (IEC 60825-1 and IEC 60825-2): never look into a fibre end or a connector; local rules and licensed persons decide."},
+	{"light", "Pump and alignment lasers and fibres in service may carry invisible laser radiation (IEC 60825-1 and IEC 60825-2): never look into a fibre end or a connector. Measuring a loss or an optical power opens fibre ends: switch the light off before a connector is opened, cap what stays open, and treat every end as live; local rules and licensed persons decide."},
 	{"cold", "Cooled detectors may use cryogens or closed cryostats: cold burns, asphyxiation and pressure. Local rules and trained persons decide."},
 }

@@ -14,7 +14,8 @@ var nan = math.NaN()
 // rules are all the warnings there are, beside what reading had to mend. The
 // limits in them are common practice, no source.
 var rules = []rule{
-	{"state-mended", stateMended},
+	{"state-mended", repaired("state-mended")},
+	{"state-fits-badly", repaired("state-fits-badly")},
 	{"efficiency-twice", efficiencyTwice},
 	{"coincidences-as-pairs", coincidencesAsPairs},
 	{"too-many-pairs", tooManyPairs},
@@ -31,12 +32,16 @@ var rules = []rule{
 
 var armEntry = [2]string{"arms.alice.", "arms.bob."}
 
-// stateMended hands on what was mended while reading.
-func stateMended(w *watch) (found []doubt) {
-	for _, r := range w.s.Repairs {
-		found = append(found, doubt{r.Entry, r.Sentence, nil})
+// repaired hands on what reading found and mended, under its rule.
+func repaired(rule string) func(*watch) []doubt {
+	return func(w *watch) (found []doubt) {
+		for _, r := range w.s.Repairs {
+			if r.Rule == rule {
+				found = append(found, doubt{r.Entry, r.Sentence, nil})
+			}
+		}
+		return found
 	}
-	return found
 }
 
 // efficiencyTwice: a collection loss measured with a detector holds that

@@ -208,7 +208,8 @@ type Acceptance struct {
 	Rows       []AcceptanceRow `json:"rows"`
 	CHSH       *Expected       `json:"chsh"`
 	Visibility *PerBasis       `json:"visibility"`
-	FiveSigmaS *float64        `json:"five_sigma_s"` // counting time until CHSH is five standard deviations above 2
+	FiveSigmaS *float64        `json:"five_sigma_s"` // counting time until CHSH at worst is five standard deviations above 2; null where it is not above
+	LevelsOf   *string         `json:"levels_of"`    // state of need_lost_at and key_lost_at: "given", or the first of "at_worst", "nominal", "at_best" that meets the need (without a need or where none does: makes key) at these settings; null where none makes key
 	Findings   []string        `json:"findings"`     // what the measured figures point to, in words
 	Sentence   string          `json:"sentence"`
 }
@@ -216,12 +217,14 @@ type Acceptance struct {
 // AcceptanceRow is one figure to read on the first day.
 type AcceptanceRow struct {
 	Figure       string   `json:"figure"` // singles_alice_hz, qber_key, ...
+	Label        string   `json:"label"`  // the figure in words
+	Unit         string   `json:"unit"`   // "" for a ratio
 	Expected     float64  `json:"expected"`
 	From         float64  `json:"from"` // tolerance: counting for a minute, the deviations stated, the members
 	To           float64  `json:"to"`
-	NeedLostAt   *float64 `json:"need_lost_at"`
-	KeyLostAt    *float64 `json:"key_lost_at"`
-	PointsTo     string   `json:"points_to"` // what a deviation points to
+	NeedLostAt   *float64 `json:"need_lost_at"` // its level when what most naturally moves it has grown until the need is just met; null where that never happens, or has
+	KeyLostAt    *float64 `json:"key_lost_at"`  // and until there is just key
+	PointsTo     string   `json:"points_to"`    // what a deviation points to
 	Measured     *float64 `json:"measured"`
 	MeasuredSays *string  `json:"measured_says"` // as expected, or the dB or the error that is missing
 }
