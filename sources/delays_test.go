@@ -145,7 +145,7 @@ func TestDelayOfExactCountsFindsThePeak(t *testing.T) {
 // for the power scan.
 func TestDelayErrorBarsHold(t *testing.T) {
 	repetitions := 200
-	if slow() {
+	if slowTests() {
 		repetitions = 2000
 	}
 	for _, d := range []delayTruth{

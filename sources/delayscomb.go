@@ -81,13 +81,9 @@ func (c delayComb) gain() float64 {
 	if s.sides < combLeast || s.restBins < s.sideBins/2 {
 		return 0
 	}
-	return gain(s.side, s.sideBins, s.rest, s.restBins)
+	return delayGain(s.side, s.sideBins, s.rest, s.restBins)
 }
 
-// The box that stands out most is 1.2 FWHM wide on a high floor and 2.5 on a low
-// one: the boxes of the comb are 0.5 to 1 FWHM wide, and periods from 1.5 FWHM on
-// are tried.
-//
 // comb returns the comb of side peaks around the tallest peak that stands out
 // most, with the centre on its tallest peak, and whether there is one.
 func (s delaySearch) comb(tallest delayBox) (best delayComb, found bool) {
@@ -100,7 +96,7 @@ func (s delaySearch) comb(tallest delayBox) (best delayComb, found bool) {
 			best, most = c, g
 		}
 	}
-	if trials == 0 || most < threshold(trials) || !best.even() || !best.resolved() {
+	if trials == 0 || most < delayThreshold(trials) || !best.even() || !best.resolved() {
 		return best, false
 	}
 	best.refine()

@@ -54,7 +54,8 @@ type DelayFit struct {
 // Where peaks at a common period stand out, as a pulsed pump makes them, they
 // are fitted together with one width, one period and one height, except the
 // tallest, which holds the pairs: its coincidences are what it has more than the
-// others. The start is found in the histogram itself.
+// others. That takes two side peaks, and a period of three bins or more. The
+// start is found in the histogram itself.
 //
 // With a window of full width τ around the peak, w its share of a Gaussian, b
 // the width of a bin, c the coincidences, s the counts of a side peak (0 with
@@ -108,7 +109,7 @@ func (h DelayHistogram) fitOne(s delaySearch, box delayBox) (*delayModel, fitted
 	inside := s.in(box)
 	floor := (s.below[len(h.Counts)] - inside) / (n - width)
 	start := []float64{max(inside-floor*width, 1), 0, max(floor, 0.5/n), box.middle(), 0, 0}
-	return m, m.best(starts(start, width, 0))
+	return m, m.best(delayStarts(start, width, 0))
 }
 
 // fitPulsed fits peaks at a common period.
@@ -118,12 +119,12 @@ func (h DelayHistogram) fitPulsed(c delayComb) (*delayModel, fitted) {
 	side := max(s.perSide-s.floorPerBox, 0.5)
 	pairs := max(c.search.in(boxAt(c.centre, c.width))-s.perSide, 1)
 	floor := max(s.floorPerBox/float64(c.width), 0.5/float64(len(h.Counts)))
-	return m, m.best(starts([]float64{pairs, side, floor, c.centre, c.period, 0}, float64(c.hole)/2, c.periodStep()))
+	return m, m.best(delayStarts([]float64{pairs, side, floor, c.centre, c.period, 0}, float64(c.hole)/2, c.periodStep()))
 }
 
-// starts returns the start with several widths of the peaks, and delays and
+// delayStarts returns the start with several widths of the peaks, and delays and
 // periods about the given ones.
-func starts(start []float64, box, periodStep float64) (all [][]float64) {
+func delayStarts(start []float64, box, periodStep float64) (all [][]float64) {
 	periods := []float64{0, -periodStep, periodStep, -2 * periodStep, 2 * periodStep}
 	if periodStep == 0 {
 		periods = periods[:1]

@@ -70,7 +70,7 @@ func (m *delayModel) settle(f *fitted) {
 		f.set(delayCentre, 1/math.Sqrt(12))
 		f.set(delayFWHM, 1)
 		if first, last := m.peaks(f.theta, len(f.mean)); m.pulsed {
-			f.set(delayPeriod, 1/math.Sqrt(6)/float64(max(last, -first)))
+			f.set(delayPeriod, 1/math.Sqrt(6)/float64(max(1, last, -first)))
 		}
 	}
 }

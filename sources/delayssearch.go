@@ -39,10 +39,10 @@ func (s delaySearch) inside(b delayBox) bool {
 // in returns the counts in a box, which lies inside.
 func (s delaySearch) in(b delayBox) float64 { return s.below[b.from+b.width] - s.below[b.from] }
 
-// gain returns by how much the deviance falls when inside bins with y counts
+// delayGain returns by how much the deviance falls when inside bins with y counts
 // and outside bins with z counts are given a floor of their own each instead of
 // one for all; 0 unless the floor is higher inside.
-func gain(y, inside, z, outside float64) float64 {
+func delayGain(y, inside, z, outside float64) float64 {
 	floor := (y + z) / (inside + outside)
 	if !(y > inside*floor) || outside <= 0 {
 		return 0
@@ -54,10 +54,10 @@ func gain(y, inside, z, outside float64) float64 {
 	return 2 * sum
 }
 
-// threshold returns the gain that one of so many trials in a flat floor exceeds
+// delayThreshold returns the gain that one of so many trials in a flat floor exceeds
 // with a chance below falseAlarm: a gain has a chi-squared distribution of one
 // degree of freedom, above x with a chance below exp(−x/2).
-func threshold(trials int) float64 { return 2 * math.Log(float64(trials)/falseAlarm) }
+func delayThreshold(trials int) float64 { return 2 * math.Log(float64(trials)/falseAlarm) }
 
 // widthsTo returns the widths of the boxes to try, each a quarter wider than the
 // one before.
@@ -77,12 +77,12 @@ func (s delaySearch) tallest() (best delayBox, found bool) {
 		for from := 0; from+width <= n; from++ {
 			trials++
 			y := s.in(delayBox{from, width})
-			if g := gain(y, float64(width), total-y, float64(n-width)); g > most {
+			if g := delayGain(y, float64(width), total-y, float64(n-width)); g > most {
 				best, most = delayBox{from, width}, g
 			}
 		}
 	}
-	return best, most > threshold(trials)
+	return best, most > delayThreshold(trials)
 }
 
 // centroid returns the mean position of what the bins of a box, and one more to
@@ -111,11 +111,11 @@ func (s delaySearch) leastPeak(width int) float64 {
 	inside, outside := float64(width), float64(n-width)
 	floor := s.below[n] / float64(n)
 	lo, hi := floor*inside, floor*inside+1
-	for gain(hi, inside, floor*outside, outside) < threshold(trials) {
+	for delayGain(hi, inside, floor*outside, outside) < delayThreshold(trials) {
 		hi *= 2
 	}
 	for range 60 {
-		if y := (lo + hi) / 2; gain(y, inside, floor*outside, outside) < threshold(trials) {
+		if y := (lo + hi) / 2; delayGain(y, inside, floor*outside, outside) < delayThreshold(trials) {
 			lo = y
 		} else {
 			hi = y

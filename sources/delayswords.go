@@ -48,7 +48,7 @@ func (r *DelayFit) sayPeak(m *delayModel) {
 
 // leastSigmas returns how many standard deviations the tallest of several equal
 // peaks exceeds with a chance of less than 0.1 %.
-func leastSigmas(peaks int) float64 { return math.Sqrt(threshold(peaks)) }
+func leastSigmas(peaks int) float64 { return math.Sqrt(delayThreshold(peaks)) }
 
 // sayNone fills in the sentences of a histogram without a peak.
 func (r *DelayFit) sayNone() {

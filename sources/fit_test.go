@@ -8,7 +8,8 @@ import (
 
 // A straight line through counts, slope and height sought.
 func lineFit(counts []float64) countFit {
-	return countFit{counts: counts, lower: []float64{0, 0}, upper: []float64{math.Inf(1), math.Inf(1)},
+	return countFit{
+		counts: counts, lower: []float64{0, 0}, upper: []float64{math.Inf(1), math.Inf(1)},
 		model: func(theta, mean []float64, slopes [][]float64) {
 			for i := range mean {
 				mean[i] = theta[0] + theta[1]*float64(i)
@@ -16,7 +17,8 @@ func lineFit(counts []float64) countFit {
 					slopes[0][i], slopes[1][i] = 1, float64(i)
 				}
 			}
-		}}
+		},
+	}
 }
 
 // At the least deviance of a straight line the fitted counts add up to those
@@ -66,7 +68,8 @@ func TestScanAndDelayFitStaysInRange(t *testing.T) {
 // Two parameters that do the same are not told apart, and a third beside them
 // is.
 func TestScanAndDelayFitNamesWhatIsNotTold(t *testing.T) {
-	f := countFit{counts: []float64{10, 12, 9, 31, 28, 30}, lower: make([]float64, 3), upper: slices.Repeat([]float64{math.Inf(1)}, 3),
+	f := countFit{
+		counts: []float64{10, 12, 9, 31, 28, 30}, lower: make([]float64, 3), upper: slices.Repeat([]float64{math.Inf(1)}, 3),
 		model: func(theta, mean []float64, slopes [][]float64) {
 			for i := range mean {
 				step := math.Floor(float64(i) / 3)
@@ -75,7 +78,8 @@ func TestScanAndDelayFitNamesWhatIsNotTold(t *testing.T) {
 					slopes[0][i], slopes[1][i], slopes[2][i] = 1, 1, step
 				}
 			}
-		}}
+		},
+	}
 	r := f.run([]float64{1, 1, 1})
 	near(t, "sum", r.theta[0]+r.theta[1], 31.0/3, 1e-6)
 	near(t, "step", r.theta[2], 89.0/3-31.0/3, 1e-6)

@@ -1,8 +1,6 @@
 package sources
 
-import (
-	"fmt"
-)
+import "fmt"
 
 // PowerScan is what was counted at the source without analysers, one detector
 // an arm, at several powers of the pump; index 0 is Alice's arm, 1 is Bob's.

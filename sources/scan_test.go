@@ -104,8 +104,8 @@ func poissonFrom(seed uint64) func(mean float64) float64 {
 	}
 }
 
-// slow tells whether the long tests run.
-func slow() bool { return os.Getenv("PAIRSPAN_SLOW") != "" }
+// slowTests tells whether the long tests run.
+func slowTests() bool { return os.Getenv("PAIRSPAN_SLOW") != "" }
 
 // Scans without noise give back the source that made them, whatever it is.
 func TestScanOfExactRatesFindsTheSource(t *testing.T) {
@@ -160,7 +160,7 @@ func TestScanFindsTheSourceInNoise(t *testing.T) {
 // standard deviations of the binomial, and of the scatter.
 func TestScanErrorBarsHold(t *testing.T) {
 	repetitions := 200
-	if slow() {
+	if slowTests() {
 		repetitions = 4000
 	}
 	for _, s := range []scanTruth{fourWave(), downConversion()} {

@@ -19,10 +19,12 @@ const (
 // linear returns the parameters of the linear fit. Its deviance is convex, so
 // that it may start anywhere. With order 1 there is no b.
 func (m *scanModel) linear() []float64 {
-	f := countFit{counts: m.fit.counts, model: m.expectLinear,
-		lower: make([]float64, linearParameters), upper: slices.Repeat([]float64{math.Inf(1)}, linearParameters)}
+	f := countFit{
+		counts: m.fit.counts, model: m.expectLinear,
+		lower: make([]float64, linearParameters), upper: slices.Repeat([]float64{math.Inf(1)}, linearParameters),
+	}
 	start := make([]float64, linearParameters)
-	time, power, pumped := dot(m.seconds, nil), dot(m.seconds, m.power), dot(m.seconds, m.pumped)
+	time, power, pumped := sumOfProducts(m.seconds, nil), sumOfProducts(m.seconds, m.power), sumOfProducts(m.seconds, m.pumped)
 	for arm := range 2 {
 		third := m.total(arm) / 3
 		start[linearPumped+arm], start[linearPower+arm], start[linearConstant+arm] = third/pumped, third/power, third/time
@@ -43,8 +45,8 @@ func (m *scanModel) total(kind int) float64 {
 	return sum
 }
 
-// dot returns Σ a b, with b nil Σ a.
-func dot(a, b []float64) float64 {
+// sumOfProducts returns Σ a b, with b nil Σ a.
+func sumOfProducts(a, b []float64) float64 {
 	sum := 0.0
 	for i, x := range a {
 		if b != nil {

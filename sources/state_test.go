@@ -120,8 +120,13 @@ func TestKnowledge(t *testing.T) {
 		state State
 		want  Knowledge
 	}{
-		{State{}, Unknown}, {FromTangle(0.5), Bounded}, {FromConcurrence(0.5), Bounded}, {FromFidelity(0.9), Bounded},
-		{FromVisibilities(0.9, 0.9), Given}, {FromDensityMatrix(Werner(0.5)), Given}, {State{Kind: 99}, Unknown},
+		{State{}, Unknown},
+		{FromTangle(0.5), Bounded},
+		{FromConcurrence(0.5), Bounded},
+		{FromFidelity(0.9), Bounded},
+		{FromVisibilities(0.9, 0.9), Given},
+		{FromDensityMatrix(Werner(0.5)), Given},
+		{State{Kind: 99}, Unknown},
 	} {
 		if got := row.state.Knowledge(); got != row.want {
 			t.Errorf("knowledge of %+v is %d, want %d", row.state, got, row.want)
@@ -152,7 +157,9 @@ func TestEditedState(t *testing.T) {
 func TestErrorsOutsideTheDomain(t *testing.T) {
 	nan := math.NaN()
 	for _, s := range []State{
-		{}, {Kind: 99}, FromTangle(-0.1), FromTangle(1.1), FromTangle(nan), FromConcurrence(-0.1), FromConcurrence(1.1),
+		{},
+		{Kind: 99},
+		FromTangle(-0.1), FromTangle(1.1), FromTangle(nan), FromConcurrence(-0.1), FromConcurrence(1.1),
 		FromFidelity(0.5), FromFidelity(1.1), FromFidelity(nan), FromVisibilities(0.9, 1.1), FromVisibilities(-0.1, 0.9), FromVisibilities(nan, 0.9),
 		FromDensityMatrix(Werner(nan)),
 	} {
