@@ -45,7 +45,7 @@ func (a *asker) members(r role) []sources.Member {
 		return []sources.Member{sources.Nominal}
 	case r == judged:
 		return []sources.Member{sources.AtWorst}
-	case a.setting.KeyShare == 0.5:
+	case a.setting.KeyShare == 0.5 && !a.s.KeyShareAuto:
 		// Where both bases see the same noise, the entropy's concavity
 		// favours unequal errors.
 		return []sources.Member{sources.BestDephased}

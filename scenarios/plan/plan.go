@@ -4,7 +4,6 @@ import (
 	"context"
 	"crypto/sha256"
 	"encoding/hex"
-	"sync/atomic"
 
 	"pairspan/keyrate"
 	"pairspan/scenarios"
@@ -14,8 +13,8 @@ import (
 const Format = 1
 
 // New plans a scenario and its compared cases. progress, if not nil, is told
-// how many of how many distances are done; it may be called from several
-// goroutines. The error is the context's, where it ended first.
+// how many of how many distances and draws are done; it may be called from
+// several goroutines. The error is the context's, where it ended first.
 func New(ctx context.Context, s *scenarios.Scenario, version string, progress func(done, total int)) (*Plan, error) {
 	asked := []named{{scenarios.FiledName, nil, newAsker(s)}}
 	for i := range s.Compare {
@@ -29,7 +28,16 @@ func New(ctx context.Context, s *scenarios.Scenario, version string, progress fu
 		}
 		p.Cases = append(p.Cases, n.answered())
 	}
-	if err := addCurves(ctx, p, s, asked, progress); err != nil {
+	toKm, points := endOfCurve(s, p.Cases), int(s.Points)
+	t := &ticker{total: points*len(asked) + asked[0].drawsToMake(), told: progress}
+	if err := addCurves(ctx, p, asked, toKm, points, t.tick); err != nil {
+		return nil, err
+	}
+	var err error
+	if p.Cases[0].Uncertainty, err = asked[0].uncertainty(ctx, &p.Cases[0], toKm, t.tick); err != nil {
+		return nil, err
+	}
+	if p.Buying, err = buying(ctx, asked, p.Cases); err != nil {
 		return nil, err
 	}
 	p.Cases[0].Acceptance = asked[0].acceptance()
@@ -68,14 +76,7 @@ func (n named) answered() Case {
 }
 
 // addCurves computes every case at the same distances.
-func addCurves(ctx context.Context, p *Plan, s *scenarios.Scenario, asked []named, progress func(done, total int)) error {
-	toKm, points := endOfCurve(s, p.Cases), int(s.Points)
-	var done atomic.Int64
-	tick := func() {
-		if n := done.Add(1); progress != nil {
-			progress(int(n), points*len(asked))
-		}
-	}
+func addCurves(ctx context.Context, p *Plan, asked []named, toKm float64, points int, tick func()) error {
 	for i, n := range asked {
 		curve, err := n.curve(ctx, toKm, points, tick)
 		if err != nil {

@@ -93,7 +93,7 @@ type Case struct {
 	Elasticities     []Elasticity   `json:"elasticities"`  // of the scenario as filed, the greatest first
 	TangleNeeded     []TangleNeeded `json:"tangle_needed"` // of the scenario as filed
 	Block            *Block         `json:"block"`         // null without finite_key or a state
-	Uncertainty      *Uncertainty   `json:"uncertainty"`   // of the scenario as filed; null without standard deviations
+	Uncertainty      *Uncertainty   `json:"uncertainty"`   // of the scenario as filed; null where nothing is uncertain
 	Acceptance       *Acceptance    `json:"acceptance"`    // of the scenario as filed; null without a state
 }
 

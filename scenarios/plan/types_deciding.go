@@ -97,28 +97,35 @@ type Block struct {
 }
 
 // Uncertainty is what the standard deviations stated make of the answer: draws
-// of all of them, at the settings that the plan chose.
+// of all of them, each normal and truncated to its entry's range, at the
+// settings that the plan chose. Without any there are no draws, bands or shares,
+// the quantiles are the figures as stated, and what is open is the interval of
+// the state alone.
 type Uncertainty struct {
-	Draws       int             `json:"draws"`
+	Draws       int             `json:"draws"` // 0 without standard deviations
 	Seed        int             `json:"seed"`
-	ChanceMet   *float64        `json:"chance_met"` // share of the draws at worst that meet the need; null without one
-	UsableRate  Quantiles       `json:"usable_rate_bps"`
-	QBERKey     Quantiles       `json:"qber_key"`
-	ReachKm     *QuantilesOrNot `json:"reach_km"`
-	Shares      []Share         `json:"shares"` // each input's share of the variance, the greatest first
-	Bands       []Band          `json:"bands"`
-	MeasureNext []Measurement   `json:"measure_next"` // what would remove most of the doubt, the best first
+	ChanceMet   *float64        `json:"chance_met"`      // share of the draws at worst that meet the need; null without a need or draws
+	UsableRate  Quantiles       `json:"usable_rate_bps"` // at worst
+	QBERKey     Quantiles       `json:"qber_key"`        // nominal
+	ReachKm     *QuantilesOrNot `json:"reach_km"`        // at worst; null where no quantile exists
+	Shares      []Share         `json:"shares"`          // each input's share of the variance, the greatest first
+	Bands       []Band          `json:"bands"`           // 61 distances from 0 to the curve's end
+	MeasureNext []Measurement   `json:"measure_next"`    // what would remove most of the doubt, the best first
 	Sentence    string          `json:"sentence"`
 }
 
-// Quantiles are the 5, 50 and 95 % points of the draws.
+// Quantiles are the 5, 50 and 95 % points of the draws. Of n values in order
+// the first stands at 0, the last at 100 %, the others evenly between; where a
+// point falls between two of them it is interpolated.
 type Quantiles struct {
 	P05 float64 `json:"p05"`
 	P50 float64 `json:"p50"`
 	P95 float64 `json:"p95"`
 }
 
-// QuantilesOrNot are Quantiles some of which do not exist: a draw may have no reach.
+// QuantilesOrNot are Quantiles some of which do not exist: a draw may meet the
+// need at no distance, which counts as less than any reach, or beyond the curve
+// still, which counts as more.
 type QuantilesOrNot struct {
 	P05 *float64 `json:"p05"`
 	P50 *float64 `json:"p50"`
@@ -140,10 +147,10 @@ type Band struct {
 
 // Measurement is one that would remove doubt, and how much.
 type Measurement struct {
-	Name       string   `json:"name"`           // two_visibilities, tomography, loss_at_wavelength, detector_calibration
-	Entries    []string `json:"entries"`        // what it would settle
-	SpreadNow  float64  `json:"spread_now_bps"` // from at worst, 5 %, to at best, 95 %
-	SpreadThen float64  `json:"spread_then_bps"`
+	Name       string   `json:"name"`            // two_visibilities, tomography, loss_at_wavelength, detector_calibration, counts_at_source
+	Entries    []string `json:"entries"`         // what it would settle
+	SpreadNow  float64  `json:"spread_now_bps"`  // usable rate from at worst, 5 %, to at best, 95 %
+	SpreadThen float64  `json:"spread_then_bps"` // the same, drawn again without that doubt
 	Sentence   string   `json:"sentence"`
 }
 
@@ -152,29 +159,35 @@ type Buying struct {
 	Costs         []Cost     `json:"costs"`                    // in the order of cases
 	Cheapest      *string    `json:"cheapest"`                 // name of the cheapest case that meets the need
 	CheapestSpare *string    `json:"cheapest_with_3_db_spare"` // and with 3 dB to spare
-	Overtakes     []Overtake `json:"overtakes"`
+	Overtakes     []Overtake `json:"overtakes"`                // the nearest first
 	Turns         []Turn     `json:"turns"`
 	Sentence      string     `json:"sentence"`
 }
 
-// Cost is what one case's detectors cost; null where a price is not stated.
+// Cost is what one case's detectors cost: pieces times price, and once per end
+// the site price where one is stated.
 type Cost struct {
 	Case         string      `json:"case"`
 	Pieces       PerArmCount `json:"pieces"`
-	Price        *float64    `json:"price"`
+	Price        *float64    `json:"price"`         // null where the price of a detector is not stated
 	WithinBudget *bool       `json:"within_budget"` // null without a budget or a price
-	MeetsNeed    bool        `json:"meets_need"`
+	MeetsNeed    bool        `json:"meets_need"`    // at worst; without a need: makes key
 	MarginDB     *float64    `json:"margin_db"`
 }
 
-// Overtake is the distance at which one case comes to make more key than another.
+// Overtake is the distance from which one case makes more usable key at worst
+// than another. Each case is compared with the scenario as filed, and the best
+// cases with the next in rank.
 type Overtake struct {
 	Case       string  `json:"case"`
 	Overtakes  string  `json:"overtakes"`
 	DistanceKm float64 `json:"distance_km"`
 }
 
-// Turn is the figure of a detector at which the order of two cases turns.
+// Turn is the figure of a detector at which the order of two cases turns: of the
+// scenario as filed and the compared case that makes most usable key at worst
+// at the installed length. The figure is varied in both cases where both have
+// the same, else in the better one.
 type Turn struct {
 	Entry  string  `json:"entry"`
 	Case   string  `json:"case"`  // better now
