@@ -6,29 +6,29 @@ import (
 )
 
 const (
-	searchStep = 2e-3 // relative, before the parabola; settings are rounded to three digits after
-	golden     = 0.6180339887498949
-	halfDigit  = 0.005 // of a setting of three digits, at most
+	golden    = 0.6180339887498949
+	halfDigit = 0.005 // of a setting of three digits, at most
 )
 
 // maximise returns the place between lo and hi, both positive, of the
 // greatest f, and f there: a grid in the logarithm, then golden sections
-// between the neighbours of its best point. Of equal values the first counts.
-func maximise(lo, hi float64, grid int, f func(float64) float64) (x, fx float64) {
+// between the neighbours of its best point, down to a relative step, and a
+// parabola. Of equal values the first counts.
+func maximise(lo, hi float64, grid int, step float64, f func(float64) float64) (x, fx float64) {
 	if !(lo < hi) {
 		return lo, f(lo)
 	}
-	step := math.Log(hi/lo) / float64(grid)
+	part := math.Log(hi/lo) / float64(grid)
 	best, bestF := 0, math.Inf(-1)
 	for i := range grid + 1 {
-		if fi := f(lo * math.Exp(float64(i)*step)); fi > bestF {
+		if fi := f(lo * math.Exp(float64(i)*part)); fi > bestF {
 			best, bestF = i, fi
 		}
 	}
-	x = lo * math.Exp(float64(best)*step)
-	a := math.Log(x) - step*float64(min(best, 1))
-	b := math.Log(x) + step*float64(min(grid-best, 1))
-	gx, gf := goldenSections(a, b, f)
+	x = lo * math.Exp(float64(best)*part)
+	a := math.Log(x) - part*float64(min(best, 1))
+	b := math.Log(x) + part*float64(min(grid-best, 1))
+	gx, gf := goldenSections(a, b, step, f)
 	if gf > bestF {
 		return gx, gf
 	}
@@ -37,11 +37,11 @@ func maximise(lo, hi float64, grid int, f func(float64) float64) (x, fx float64)
 
 // goldenSections narrows the logarithms a to b onto the maximum of f, and
 // ends with the vertex of the parabola through the last three points.
-func goldenSections(a, b float64, f func(float64) float64) (x, fx float64) {
+func goldenSections(a, b, step float64, f func(float64) float64) (x, fx float64) {
 	c, d := b-golden*(b-a), a+golden*(b-a)
 	fc, fd := f(math.Exp(c)), f(math.Exp(d))
 	third, fThird := a, math.Inf(-1) // the last point left behind
-	for b-a > searchStep {
+	for b-a > step {
 		if fc >= fd {
 			third, fThird = d, fd
 			b, d, fd = d, c, fc
@@ -58,15 +58,21 @@ func goldenSections(a, b float64, f func(float64) float64) (x, fx float64) {
 	if fd > fc {
 		best, fBest, other, fOther = d, fd, c, fc
 	}
-	return math.Exp(vertex(best, fBest, other, fOther, third, fThird)), fBest
+	if v := vertex(best, fBest, other, fOther, third, fThird); v != best {
+		if fv := f(math.Exp(v)); fv > fBest {
+			return math.Exp(v), fv
+		}
+	}
+	return math.Exp(best), fBest
 }
 
-// vertex returns where the parabola through three points is greatest, at most
-// one step from x; x itself where there is no such place.
+// vertex returns where the parabola through three points is greatest; x, whose
+// f is the greatest and which lies between the others, where there is no such
+// place.
 func vertex(x, fx, y, fy, z, fz float64) float64 {
 	p, q := (x-y)*(fx-fz), (x-z)*(fx-fy)
-	at := x - ((x-y)*q-(x-z)*p)/(2*(q-p))
-	if math.Abs(at-x) <= searchStep { // false for NaN
+	at := x - ((x-y)*p-(x-z)*q)/(2*(p-q))
+	if at >= min(y, z) && at <= max(y, z) { // false for NaN
 		return at
 	}
 	return x

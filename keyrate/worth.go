@@ -16,14 +16,18 @@ const (
 // worth is what a search climbs: the secret rate where there is key, and
 // otherwise how far the link is from one, which is not positive. (The signed
 // rate has false peaks where nothing is sifted.) Whole bits would be stairs,
-// so a block's key is not floored here.
+// so neither a block's division nor its key is rounded here.
 func (v *view) worth(windowS float64, g goal) float64 {
 	var r Rate
 	v.key(windowS, &r)
 	l := v.link
 	if g == blockKey {
-		b := l.Split(&r)
-		return keyOrWant(r.SiftedBps(), (b.SecretBits()-l.AuthenticationBits)/l.BlockBits)
+		b, sifted := l.Split(&r), r.SiftedBps()
+		if sifted > 0 {
+			b.KeyBits = l.BlockBits * r.SiftedHz[KeyBasis] / sifted
+			b.CheckBits = l.BlockBits - b.KeyBits
+		}
+		return keyOrWant(sifted, (b.SecretBits()-l.AuthenticationBits)/l.BlockBits)
 	}
 	hk, hc, f := BinaryEntropy(r.QBER[KeyBasis]), BinaryEntropy(r.QBER[CheckBasis]), l.ErrorCorrectionF
 	key, check := 1-f*hk-hc, 1-f*hc-hk

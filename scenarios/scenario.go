@@ -74,6 +74,7 @@ type Source struct {
 	WavelengthNm    [2]float64
 	PumpPulseFWHMPs float64
 	BandwidthFWHMNm [2]float64 // Bob's is NaN where it follows by energy conservation
+	ArrivalFWHMPs   float64    // continuous: spread of a pair's arrivals as measured without fibre; 0: as detectors, clock and coherence make it
 }
 
 // Counted is what was counted at the source, without analysers and with one

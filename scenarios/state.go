@@ -114,14 +114,23 @@ func (r *reader) counts(entry string, data []byte) error {
 
 // laboratory reports an error in a laboratory file at its place there.
 func (r *reader) laboratory(entry, name string, err error) {
-	e := Error{File: r.files.shown(name), Line: 1, Column: 1, Entry: entry}
+	for _, e := range LaboratoryErrors(r.files.shown(name), err) {
+		e.Entry = entry
+		r.errs = append(r.errs, e)
+	}
+}
+
+// LaboratoryErrors returns what is wrong with a laboratory file of that name as
+// reading a scenario would.
+func LaboratoryErrors(name string, err error) Errors {
+	e := Error{File: name, Line: 1, Column: 1}
 	e.Problem, e.Hint = cutHint(err)
 	var at *sources.CSVError
 	if errors.As(err, &at) {
 		e.Line, e.Column = max(1, at.Line), max(1, at.Column)
 		e.Problem, e.Hint = at.Problem, at.Hint
 	}
-	r.errs = append(r.errs, e)
+	return Errors{e}
 }
 
 // cutHint splits what to do next from an error that ends with it.

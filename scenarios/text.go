@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"io"
 	"io/fs"
+	"os"
 	"unicode/utf8"
 )
 
@@ -20,11 +21,33 @@ func (p *fileProblem) in(name string) Errors {
 	return Errors{{name, p.at.line, p.at.column, "", p.problem, p.hint}}
 }
 
-var tooLarge = fileProblem{place{1, 1}, fmt.Sprintf("the file is larger than %d KiB", maxFileBytes>>10), "is it the right file?"}
+var tooLarge = largerThan(maxFileBytes)
 
-// readText reads a whole regular file of bounded size. It opens nothing that
-// is not a regular file, since a pipe or a device might never end.
+func largerThan(most int64) fileProblem {
+	return fileProblem{place{1, 1}, fmt.Sprintf("the file is larger than %d KiB", most>>10), "is it the right file?"}
+}
+
+// ReadFile reads a whole regular file of bounded size, for one that no scenario
+// names. The error is Errors.
+func ReadFile(name string, mostBytes int64) ([]byte, error) {
+	data, problem := readBounded(mostBytes,
+		func() (fs.FileInfo, error) { return os.Stat(name) },
+		func() (fs.File, error) { return os.Open(name) })
+	if problem != nil {
+		return nil, problem.in(name)
+	}
+	return data, nil
+}
+
+// readText reads a whole file of the size that a scenario may have.
 func readText(stat func() (fs.FileInfo, error), open func() (fs.File, error)) ([]byte, *fileProblem) {
+	return readBounded(maxFileBytes, stat, open)
+}
+
+// readBounded reads a whole regular file of bounded size. It opens nothing that
+// is not a regular file, since a pipe or a device might never end.
+func readBounded(most int64, stat func() (fs.FileInfo, error), open func() (fs.File, error)) ([]byte, *fileProblem) {
+	large := largerThan(most)
 	info, err := stat()
 	switch {
 	case err != nil:
@@ -33,20 +56,20 @@ func readText(stat func() (fs.FileInfo, error), open func() (fs.File, error)) ([
 		return nil, &fileProblem{place{1, 1}, "this is a folder, not a file", "name the file in it"}
 	case !info.Mode().IsRegular():
 		return nil, &fileProblem{place{1, 1}, "this is not a regular file", "save the text to a file first"}
-	case info.Size() > maxFileBytes:
-		return nil, &tooLarge
+	case info.Size() > most:
+		return nil, &large
 	}
 	f, err := open()
 	if err != nil {
 		return nil, openProblem(err)
 	}
 	defer f.Close()
-	data, err := io.ReadAll(io.LimitReader(f, maxFileBytes+1)) // it may have grown
+	data, err := io.ReadAll(io.LimitReader(f, most+1)) // it may have grown
 	switch {
 	case err != nil:
 		return nil, openProblem(err)
-	case len(data) > maxFileBytes:
-		return nil, &tooLarge
+	case int64(len(data)) > most:
+		return nil, &large
 	}
 	return data, nil
 }

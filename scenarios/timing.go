@@ -16,14 +16,19 @@ func (s *Scenario) Bandwidth(i int) float64 {
 	return link.PartnerBandwidth(src.BandwidthFWHMNm[Alice], src.WavelengthNm[Alice], src.WavelengthNm[Bob])
 }
 
+// dispersion returns an arm's chromatic dispersion: as stated, else by the
+// wavelength.
+func (s *Scenario) dispersion(i int) float64 {
+	if d := s.Arms[i].DispersionPsPerNmKm; Stated(d) {
+		return d
+	}
+	return link.Dispersion(s.Source.WavelengthNm[i])
+}
+
 // dispersionSpread returns the signed spread, ps, that a fibre gives a photon
 // over its bandwidth.
 func (s *Scenario) dispersionSpread(i int, lengthKm float64) float64 {
-	d := s.Arms[i].DispersionPsPerNmKm
-	if !Stated(d) {
-		d = link.Dispersion(s.Source.WavelengthNm[i])
-	}
-	return d * lengthKm * s.Bandwidth(i)
+	return s.dispersion(i) * lengthKm * s.Bandwidth(i)
 }
 
 // coherence returns the longer of the two photons' coherence times.
@@ -39,9 +44,12 @@ func (s *Scenario) coherence() float64 {
 // frequency, so dispersion of equal sign in both arms adds up and of opposite
 // sign cancels (Franson, PRA 45, 3126 (1992)).
 func (s *Scenario) differenceSpread(lengthKm [2]float64) float64 {
+	dispersion := s.dispersionSpread(Alice, lengthKm[Alice]) + s.dispersionSpread(Bob, lengthKm[Bob])
+	if measured := s.Source.ArrivalFWHMPs; measured > 0 {
+		return link.RootSumSquare(measured, dispersion)
+	}
 	return link.RootSumSquare(
-		s.detectorOf(Alice).JitterFWHMPs, s.detectorOf(Bob).JitterFWHMPs, s.ClockJitterFWHMPs, s.coherence(),
-		s.dispersionSpread(Alice, lengthKm[Alice])+s.dispersionSpread(Bob, lengthKm[Bob]))
+		s.detectorOf(Alice).JitterFWHMPs, s.detectorOf(Bob).JitterFWHMPs, s.ClockJitterFWHMPs, s.coherence(), dispersion)
 }
 
 // clockSpread returns the FWHM of one photon's arrival against the clock of a

@@ -12,6 +12,7 @@ const (
 	maxShareOff   = 0.01
 	nearBins      = 1e-3 // of the widest spacing: the same bin, written in two ways
 	unevenSpacing = 1.5  // the widest over the narrowest
+	edgeDigits    = 1e9  // per nm: edges read as a person would write them
 )
 
 // finish returns the map of all rows.
@@ -117,6 +118,9 @@ func edges(centres []float64) []float64 {
 	if n > 1 {
 		e[0] -= e[1] - centres[0]
 		e[n] += centres[n-1] - e[n-1]
+	}
+	for i := range e {
+		e[i] = math.Round(e[i]*edgeDigits) / edgeDigits
 	}
 	return e
 }

@@ -2,6 +2,7 @@ package main
 
 import (
 	"bytes"
+	"errors"
 	"fmt"
 	"io"
 	"path/filepath"
@@ -46,39 +47,68 @@ func (o *output) writer() (func(io.Writer, *plan.Plan) error, error) {
 	return nil, fmt.Errorf("--format %q is not one of %s", o.format, formatNames())
 }
 
+// axis is an entry in place of distance, and its range.
+type axis struct{ entry, from, to string }
+
+func (a *axis) flags(cmd *cobra.Command) {
+	cmd.Flags().StringVar(&a.entry, "against", "", "also plan over this entry in place of distance, at the installed length")
+	cmd.Flags().StringVar(&a.from, "from", "", "with --against: its first value (default: chosen about the figure in use)")
+	cmd.Flags().StringVar(&a.to, "to", "", "with --against: its last value")
+}
+
+// of returns the axis of a scenario, nil where none is asked for.
+func (a *axis) of(s *scenarios.Scenario) (*plan.Axis, error) {
+	if a.entry == "" {
+		if a.from != "" || a.to != "" {
+			return nil, errors.New("--from and --to are of an entry: add --against ENTRY")
+		}
+		return nil, nil
+	}
+	x, err := plan.NewAxis(s, a.entry, a.from, a.to)
+	if err != nil {
+		return nil, fmt.Errorf("--against %w", err)
+	}
+	return x, nil
+}
+
 func (c *commands) planCommand() *cobra.Command {
 	var o output
+	var a axis
 	cmd := &cobra.Command{
-		Use:     "plan FILE",
-		Short:   "Say whether a scenario's link meets its need, by how much, and what stands in the way",
-		Example: "  pairspan plan link.yaml\n  pairspan plan link.yaml --out report --format csv > curve.csv",
-		Args:    oneFile,
+		Use:   "plan FILE",
+		Short: "Say whether a scenario's link meets its need, by how much, and what stands in the way",
+		Example: "  pairspan plan link.yaml\n  pairspan plan link.yaml --out report --format csv > curve.csv\n" +
+			"  pairspan plan link.yaml --against window_ps --from 200 --to 2000 --out report",
+		Args: oneFile,
 		RunE: func(cmd *cobra.Command, args []string) error {
-			return c.plan(cmd, o, func() (*scenarios.Scenario, error) { return scenarios.Load(args[0]) })
+			return c.plan(cmd, o, a, func() (*scenarios.Scenario, error) { return scenarios.Load(args[0]) })
 		},
 	}
 	o.flags(cmd)
+	a.flags(cmd)
 	return cmd
 }
 
 func (c *commands) demoCommand() *cobra.Command {
 	var o output
+	var a axis
 	cmd := &cobra.Command{
 		Use:   "demo",
 		Short: "Plan a scenario that is built in: an invented campus, three candidate detectors",
 		Args:  cobra.NoArgs,
 		RunE: func(cmd *cobra.Command, _ []string) error {
-			return c.plan(cmd, o, func() (*scenarios.Scenario, error) {
+			return c.plan(cmd, o, a, func() (*scenarios.Scenario, error) {
 				return scenarios.LoadFS(scenarios.Examples, "demo.yaml")
 			})
 		},
 	}
 	o.flags(cmd)
+	a.flags(cmd)
 	return cmd
 }
 
 // plan reads, plans, writes the folder and then standard output.
-func (c *commands) plan(cmd *cobra.Command, o output, load func() (*scenarios.Scenario, error)) error {
+func (c *commands) plan(cmd *cobra.Command, o output, a axis, load func() (*scenarios.Scenario, error)) error {
 	write, err := o.writer()
 	if err != nil {
 		return err
@@ -87,9 +117,18 @@ func (c *commands) plan(cmd *cobra.Command, o output, load func() (*scenarios.Sc
 	if err != nil {
 		return err
 	}
+	over, err := a.of(s)
+	if err != nil {
+		return err
+	}
 	p, err := plan.New(cmd.Context(), s, version, progress(c.errs))
 	if err != nil {
 		return err
+	}
+	if over != nil {
+		if err := p.AddAgainst(cmd.Context(), over, progress(c.errs)); err != nil {
+			return fmt.Errorf("--against %w", err)
+		}
 	}
 	var b bytes.Buffer // whole or not at all
 	if err := write(&b, p); err != nil {

@@ -41,6 +41,9 @@ func New(ctx context.Context, s *scenarios.Scenario, version string, progress fu
 		return nil, err
 	}
 	p.Cases[0].Acceptance = asked[0].acceptance()
+	if err = asked[0].addServes(ctx, &p.Cases[0], toKm); err != nil {
+		return nil, err
+	}
 	p.Warnings = warnings(asked)
 	return p, nil
 }

@@ -1,5 +1,7 @@
 package plan
 
+import "slices"
+
 // references are the published sources of the formulas a plan uses.
 var references = []Reference{
 	{"protocol", "Bennett et al., PRL 68, 557 (1992): key from photon pairs measured in two bases; the sifting factor."},
@@ -16,6 +18,9 @@ var references = []Reference{
 	{"finite-key", "Lim et al., PRL 126, 100501 (2021): finite-size key of a block with separate basis errors."},
 	{"bell", "Horodecki et al., PLA 200, 340 (1995): the greatest CHSH value of a two-qubit state."},
 }
+
+// Cautions are said with every answer about a link or a source.
+func Cautions() []Caution { return slices.Clone(cautions) }
 
 // cautions are said with every plan.
 var cautions = []Caution{

@@ -200,6 +200,8 @@ type Turn struct {
 type Against struct {
 	Entry string        `json:"entry"`
 	Unit  string        `json:"unit"`
+	Scale string        `json:"scale"`  // "log" or "linear": how its values are spaced
+	InUse *float64      `json:"in_use"` // as described, or as the planner chose it; null where there is no figure
 	Cases []AgainstCase `json:"cases"`
 }
 
