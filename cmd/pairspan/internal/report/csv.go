@@ -13,22 +13,52 @@ import (
 // CSV writes the curves of all cases: first the case's name, then every
 // figure of a point under its JSON path with underscores. A null is empty.
 func CSV(w io.Writer, p *plan.Plan) error {
-	c := csv.NewWriter(w)
-	header := append([]string{"case"}, paths(reflect.TypeFor[plan.Point](), "")...)
-	if err := c.Write(header); err != nil {
-		return err
-	}
+	t := newPointTable(w, "case")
 	for i := range p.Cases {
 		for j := range p.Cases[i].Curve {
-			row := append(make([]string, 0, len(header)), guarded(p.Cases[i].Name))
-			row = appendCells(row, reflect.ValueOf(p.Cases[i].Curve[j]))
-			if err := c.Write(row); err != nil {
-				return err
-			}
+			t.row(&p.Cases[i].Curve[j], guarded(p.Cases[i].Name))
 		}
 	}
-	c.Flush()
-	return c.Error()
+	return t.end()
+}
+
+// AgainstCSV is CSV over another entry in place of distance, whose name and
+// value stand second and third.
+func AgainstCSV(w io.Writer, p *plan.Plan) error {
+	t := newPointTable(w, "case", "entry", "value")
+	for _, c := range p.Against.Cases {
+		for i := range c.Points {
+			at := &c.Points[i]
+			t.row(&at.Point, guarded(c.Name), p.Against.Entry, strconv.FormatFloat(at.Value, 'g', -1, 64))
+		}
+	}
+	return t.end()
+}
+
+// pointTable is a table of points, each behind a few cells of its own.
+type pointTable struct {
+	csv *csv.Writer
+	err error
+}
+
+func newPointTable(w io.Writer, first ...string) *pointTable {
+	t := &pointTable{csv: csv.NewWriter(w)}
+	t.err = t.csv.Write(append(first, paths(reflect.TypeFor[plan.Point](), "")...))
+	return t
+}
+
+func (t *pointTable) row(p *plan.Point, first ...string) {
+	if t.err == nil {
+		t.err = t.csv.Write(appendCells(first, reflect.ValueOf(*p)))
+	}
+}
+
+func (t *pointTable) end() error {
+	t.csv.Flush()
+	if t.err != nil {
+		return t.err
+	}
+	return t.csv.Error()
 }
 
 // paths lists the JSON paths of a struct's figures, in order.

@@ -13,16 +13,27 @@ import (
 // Page is the name of the report in its folder.
 const Page = "report.html"
 
-// files are what a folder of results holds.
-var files = []struct {
+// file is one of the files that a folder of results holds.
+type file[T any] struct {
 	name  string
-	write func(io.Writer, *plan.Plan) error
-}{{"plan.json", JSON}, {"curve.csv", CSV}, {Page, HTML}}
+	write func(io.Writer, T) error
+}
+
+// planFiles are those of a plan, the page last.
+var planFiles = []file[*plan.Plan]{{"plan.json", JSON}, {"curve.csv", CSV}, {Page, HTML}}
 
 // Folder writes plan.json, curve.csv and report.html into dir, which is made
-// where missing. Each is written beside its place and then renamed, the old
+// where missing, and against.csv where an entry was asked for. Each is written beside its place and then renamed, the old
 // ones staying whole until all are written.
-func Folder(dir string, p *plan.Plan) (err error) {
+func Folder(dir string, p *plan.Plan) error {
+	files := planFiles
+	if p.Against != nil {
+		files = append([]file[*plan.Plan]{{"against.csv", AgainstCSV}}, files...)
+	}
+	return writeFolder(dir, files, p)
+}
+
+func writeFolder[T any](dir string, files []file[T], of T) (err error) {
 	if err := os.MkdirAll(dir, 0o755); err != nil {
 		return err
 	}
@@ -40,7 +51,7 @@ func Folder(dir string, p *plan.Plan) (err error) {
 			return fmt.Errorf("%s: a folder stands where the file belongs", filepath.Join(dir, f.name))
 		}
 		var b bytes.Buffer
-		if err := f.write(&b, p); err != nil {
+		if err := f.write(&b, of); err != nil {
 			return fmt.Errorf("%s: %w", f.name, err)
 		}
 		beside := filepath.Join(dir, "."+f.name+".part")

@@ -36,7 +36,9 @@ func Text(w io.Writer, p *plan.Plan) error {
 	end := &textPage{}
 	end.gap()
 	end.wrap("A planned key rate is an estimate, not a security claim. Invisible laser light, cold detectors: local rules and licensed persons decide.", "")
-	t.warnings(p, mostLines-len(t.lines)-len(end.lines))
+	room := mostLines - len(t.lines) - len(end.lines)
+	t.warnings(p, room)
+	t.deciding(p, mostLines-len(t.lines)-len(end.lines))
 	t.lines = append(t.lines, end.lines...)
 	_, err := io.WriteString(w, strings.Join(t.lines, "\n")+"\n")
 	return err
@@ -251,6 +253,37 @@ func briefly(o plan.Outcome) string {
 		return "if best"
 	}
 	return spaced(string(o))
+}
+
+// deciding adds what else the plan says of the scenario as filed, a sentence
+// each, as far as the lines reach.
+func (t *textPage) deciding(p *plan.Plan, room int) {
+	c := &p.Cases[0]
+	var sentences []string
+	if c.Best != nil {
+		sentences = append(sentences, c.Best.Sentence)
+	}
+	if c.Block != nil {
+		sentences = append(sentences, c.Block.Sentence)
+	}
+	if c.Uncertainty != nil {
+		sentences = append(sentences, c.Uncertainty.Sentence)
+	}
+	if p.Buying != nil {
+		sentences = append(sentences, p.Buying.Sentence)
+	}
+	more := &textPage{}
+	for _, s := range sentences {
+		one := &textPage{}
+		one.wrap(s, "")
+		if s != "" && 1+len(more.lines)+len(one.lines) <= room {
+			more.lines = append(more.lines, one.lines...)
+		}
+	}
+	if len(more.lines) > 0 {
+		t.gap()
+		t.lines = append(t.lines, more.lines...)
+	}
 }
 
 // warnings shows the few that would change most, in full where the lines left
