@@ -3,13 +3,13 @@ package keyrate
 import "math"
 
 const (
-	wideGrid   = 14   // points of a search over the whole range
-	fineStep   = 5e-3 // relative, before its parabola: of a setting that is free alone; three digits are kept
-	coarseStep = 0.1  // of one among several
-	firstStep  = 0.2  // of the climbs that follow, relative
-	leastStep  = 0.02
-	mostSweeps = 12
-	leastGain  = 1e-6 // relative; a sweep that gains less is the last
+	wideGrid     = 14   // parts of a search over the whole range
+	fineStep     = 5e-3 // relative, before its parabola: of a window that is free alone; three digits are kept
+	firstStep    = 0.2  // relative, of the climbs that follow a search of several settings
+	leastStep    = 0.02 // of the last of them
+	shortestStep = 1e-3
+	mostSweeps   = 12
+	leastGain    = 1e-7 // relative; a sweep that gains less is the last
 )
 
 // direction is a line of settings to climb along.
@@ -175,19 +175,29 @@ func (a *ascent) take(p OperatingPoint, worth float64) {
 	}
 }
 
-// wide looks for the greatest along the whole of a direction.
+// wide tries the whole of a direction, and climbs from the best place.
 func (a *ascent) wide(d direction) {
 	if !a.open(d) {
 		return
 	}
 	lo, hi, at := a.bounds(d)
-	x, worth := maximise(lo/at, hi/at, wideGrid, coarseStep, func(x float64) float64 { return a.ask(a.along(d, x)) })
-	a.take(a.along(d, x), worth)
+	part := math.Log(hi/lo) / wideGrid
+	start := *a
+	for i := range wideGrid + 1 {
+		if i > 0 && part == 0 {
+			break
+		}
+		p := start.along(d, lo/at*math.Exp(float64(i)*part))
+		a.take(p, a.ask(p))
+	}
+	a.near(d, part/3)
 }
 
 // near climbs from where it stands: steps, each twice the last, until they
 // lead down, and then to the vertex of the parabola through the last three
-// points. (Beyond a range's end the settings stay, and nothing is gained.)
+// points. Where that is no better although it is not close by, the peak is too
+// sharp for the steps, and they get shorter. (Beyond a range's end the settings
+// stay, and nothing is gained.)
 func (a *ascent) near(d direction, step float64) {
 	if !a.open(d) {
 		return
@@ -197,25 +207,48 @@ func (a *ascent) near(d direction, step float64) {
 		lo, hi, at := a.bounds(d)
 		least, most = math.Log(lo/at), math.Log(hi/at)
 	}
-	f := func(t float64) (float64, float64) {
+	f := func(t float64) spot {
 		t = max(least, min(most, t))
-		return t, a.ask(a.along(d, math.Exp(t)))
+		return spot{t, a.ask(a.along(d, math.Exp(t)))}
 	}
-	x, fx := 0.0, a.worth
-	y, fy := f(step)
-	z, fz := y, fy
-	if !(fy > fx) {
-		y, fy = f(-step)
-	}
-	for fy > fx {
-		z, fz = x, fx
-		x, fx = y, fy
-		y, fy = f(x + 2*(x-z))
-	}
-	if v := vertex(x, fx, y, fy, z, fz); v != x {
-		if v, fv := f(v); fv > fx {
-			x, fx = v, fv
+	best := spot{0, a.worth}
+	for ; step > shortestStep; step /= 4 {
+		v, peak := climb(best, step, f)
+		if peak.f > best.f || math.Abs(v-best.x) < step/64 {
+			best = peak
+			break
 		}
 	}
-	a.take(a.along(d, math.Exp(x)), fx)
+	a.take(a.along(d, math.Exp(best.x)), best.f)
+}
+
+// spot is a place and what it is worth.
+type spot struct{ x, f float64 }
+
+// climb brackets the peak next to x, and returns the vertex of the parabola
+// through the bracket and the best spot it has seen.
+func climb(x spot, step float64, f func(float64) spot) (v float64, best spot) {
+	y := f(x.x + step)
+	z := y
+	if !(y.f > x.f) {
+		y = f(x.x - step)
+	}
+	for y.f > x.f {
+		x, y, z = y, f(y.x+2*(y.x-x.x)), x
+	}
+	switch x.x { // at the end of a range the bracket has one side
+	case z.x:
+		z = f((x.x + y.x) / 2)
+	case y.x:
+		y = f((x.x + z.x) / 2)
+	}
+	if v = vertex(x, y, z); v != x.x {
+		z = f(v)
+	}
+	for _, s := range [...]spot{y, z} {
+		if s.f > x.f {
+			x = s
+		}
+	}
+	return v, x
 }

@@ -38,44 +38,38 @@ func maximise(lo, hi float64, grid int, step float64, f func(float64) float64) (
 // goldenSections narrows the logarithms a to b onto the maximum of f, and
 // ends with the vertex of the parabola through the last three points.
 func goldenSections(a, b, step float64, f func(float64) float64) (x, fx float64) {
-	c, d := b-golden*(b-a), a+golden*(b-a)
-	fc, fd := f(math.Exp(c)), f(math.Exp(d))
-	third, fThird := a, math.Inf(-1) // the last point left behind
+	at := func(u float64) spot { return spot{u, f(math.Exp(u))} }
+	c, d := at(b-golden*(b-a)), at(a+golden*(b-a))
+	third := spot{a, math.Inf(-1)} // the last left behind
 	for b-a > step {
-		if fc >= fd {
-			third, fThird = d, fd
-			b, d, fd = d, c, fc
-			c = b - golden*(b-a)
-			fc = f(math.Exp(c))
+		if c.f >= d.f {
+			third, b, d = d, d.x, c
+			c = at(b - golden*(b-a))
 		} else {
-			third, fThird = c, fc
-			a, c, fc = c, d, fd
-			d = a + golden*(b-a)
-			fd = f(math.Exp(d))
+			third, a, c = c, c.x, d
+			d = at(a + golden*(b-a))
 		}
 	}
-	best, fBest, other, fOther := c, fc, d, fd
-	if fd > fc {
-		best, fBest, other, fOther = d, fd, c, fc
+	if d.f > c.f {
+		c, d = d, c
 	}
-	if v := vertex(best, fBest, other, fOther, third, fThird); v != best {
-		if fv := f(math.Exp(v)); fv > fBest {
-			return math.Exp(v), fv
+	if v := vertex(c, d, third); v != c.x {
+		if peak := at(v); peak.f > c.f {
+			c = peak
 		}
 	}
-	return math.Exp(best), fBest
+	return math.Exp(c.x), c.f
 }
 
-// vertex returns where the parabola through three points is greatest; x, whose
-// f is the greatest and which lies between the others, where there is no such
-// place.
-func vertex(x, fx, y, fy, z, fz float64) float64 {
-	p, q := (x-y)*(fx-fz), (x-z)*(fx-fy)
-	at := x - ((x-y)*p-(x-z)*q)/(2*(p-q))
-	if at >= min(y, z) && at <= max(y, z) { // false for NaN
+// vertex returns where the parabola through three spots, x the greatest, has
+// its peak; x where that is not between them.
+func vertex(x, y, z spot) float64 {
+	p, q := (x.x-y.x)*(x.f-z.f), (x.x-z.x)*(x.f-y.f)
+	at := x.x - ((x.x-y.x)*p-(x.x-z.x)*q)/(2*(p-q))
+	if at >= min(x.x, y.x, z.x) && at <= max(x.x, y.x, z.x) { // false for NaN
 		return at
 	}
-	return x
+	return x.x
 }
 
 // Round3 rounds a positive setting to three significant digits, so that a

@@ -98,12 +98,16 @@ var rivals = rivalsOf()
 func rivalsOf() map[string][]string {
 	m := map[string][]string{
 		"source.pair_rate_hz": {
-			"source.pulse_rate_hz", "source.pairs_per_pulse", "source.counted",
+			"source.pulse_rate_hz", "source.pairs_per_pulse", "source.counted", powerScanEntry,
 			"source.schmidt_number", "source.max_pairs_per_pulse", "source.pump_pulse_fwhm_ps",
 		},
 		"source.pulse_rate_hz":   {"source.pair_rate_hz", "source.max_pair_rate_hz"},
-		"source.pairs_per_pulse": {"source.pair_rate_hz", "source.max_pair_rate_hz", "source.counted"},
-		"source.counted":         {"source.pair_rate_hz", "source.pairs_per_pulse"},
+		"source.pairs_per_pulse": {"source.pair_rate_hz", "source.max_pair_rate_hz", "source.counted", powerScanEntry},
+		"source.counted":         {"source.pair_rate_hz", "source.pairs_per_pulse", powerScanEntry},
+		powerScanEntry: {
+			"source.pair_rate_hz", "source.pairs_per_pulse", "source.counted", "source.unpaired_photons_hz",
+			"source.max_pair_rate_hz", "source.max_pairs_per_pulse",
+		},
 
 		"need.secret_rate_bps":  {"need.aes256_renewal_s", "need.encrypted_connections", "need.key_bits_per_day"},
 		"need.aes256_renewal_s": {"need.secret_rate_bps", "need.key_bits_per_day"},

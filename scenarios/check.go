@@ -17,6 +17,7 @@ func (r *reader) prepare() {
 		}
 	}
 	r.s.Source.Counted.Used = r.stated["source.counted"] != nil
+	r.s.Source.PowerScan.Used = r.stated[powerScanEntry] != nil
 }
 
 // stateKinds are the descriptions of a state, of which one can stand.
@@ -67,6 +68,7 @@ func (r *reader) check() {
 	r.checkEmission()
 	r.checkState()
 	r.checkCounted()
+	r.checkScan()
 	r.checkArms()
 	r.checkWindow()
 	r.checkNeed()
@@ -77,7 +79,11 @@ func (r *reader) check() {
 	r.takeOutAccidentals()
 	if _, err := r.s.Emission(); err != nil {
 		problem, hint := cutHint(err)
-		r.fail("source.counted", r.keys["source.counted"], problem, cmp.Or(hint, "check what was counted, and with which detectors"))
+		entry := "source.counted"
+		if r.s.Source.PowerScan.Used {
+			entry = powerScanEntry
+		}
+		r.fail(entry, r.keys[entry], problem, cmp.Or(hint, "check what was counted, and with which detectors"))
 		return
 	}
 	r.checkSpread()
@@ -111,23 +117,27 @@ func (r *reader) checkEmission() {
 		return
 	}
 	is := func(leaf string) bool { return r.stated["source."+leaf] != nil }
-	const choice = "an emission is pair_rate_hz, or pulse_rate_hz with pairs_per_pulse, or counted (with pulse_rate_hz if pulsed)"
+	const choice = "an emission is pair_rate_hz, pulse_rate_hz with pairs_per_pulse, counted or power_scan (the last two with pulse_rate_hz if pulsed)"
 	before := len(r.errs)
 	r.exclude(choice, "source.pair_rate_hz", "source.pulse_rate_hz")
 	r.exclude(choice, "source.pair_rate_hz", "source.pairs_per_pulse")
 	r.exclude(choice, "source.pair_rate_hz", "source.counted")
 	r.exclude(choice, "source.pairs_per_pulse", "source.counted")
+	for _, other := range []string{"source.pair_rate_hz", "source.pairs_per_pulse", "source.counted"} {
+		r.exclude(choice, other, powerScanEntry)
+	}
+	measured := is("counted") || is("power_scan")
 	switch at := r.keys["source"]; {
 	case len(r.errs) > before:
 		return
-	case !is("pair_rate_hz") && !is("pulse_rate_hz") && !is("pairs_per_pulse") && !is("counted"):
+	case !is("pair_rate_hz") && !is("pulse_rate_hz") && !is("pairs_per_pulse") && !measured:
 		r.fail("source", at, "no emission is stated", choice)
 		return
 	case is("pairs_per_pulse") && !is("pulse_rate_hz"):
 		r.fail("source.pulse_rate_hz", at, "required, but missing", "pairs_per_pulse is of a pulsed source")
 		return
-	case is("pulse_rate_hz") && !is("pairs_per_pulse") && !is("counted"):
-		r.fail("source.pairs_per_pulse", at, "required, but missing", "a pulsed source is pulse_rate_hz with pairs_per_pulse or counted")
+	case is("pulse_rate_hz") && !is("pairs_per_pulse") && !measured:
+		r.fail("source.pairs_per_pulse", at, "required, but missing", "a pulsed source is pulse_rate_hz with pairs_per_pulse, counted or power_scan")
 	}
 	for _, l := range r.leaves {
 		if !r.applies(l.row) {
@@ -208,9 +218,9 @@ func (r *reader) checkArms() {
 		for _, item := range itemised {
 			r.exclude("measured_loss_db holds connectors and splices already", group+".measured_loss_db", group+"."+item)
 		}
-		if r.s.Arms[i].FixedLossFromCounts && !r.s.Source.Counted.Used {
+		if r.s.Arms[i].FixedLossFromCounts && !r.s.Source.EmissionMeasured() {
 			name := group + ".fixed_loss_db"
-			r.fail(name, r.stated[name].at, "from_counts, but nothing was counted", "state source.counted, or the loss in dB")
+			r.fail(name, r.stated[name].at, "from_counts, but nothing was counted", "state source.counted or source.power_scan, or the loss in dB")
 		}
 		r.checkAttenuation(i, group)
 	}

@@ -20,6 +20,8 @@ func (s *Scenario) Emission() (Emission, error) {
 	switch {
 	case src.Counted.Used:
 		return s.counted()
+	case src.PowerScan.Used:
+		return s.scanned()
 	case s.Pulsed():
 		return Emission{PairRateHz: src.PulseRateHz * src.PairsPerPulse}, nil
 	}

@@ -6,6 +6,7 @@ import (
 	"strconv"
 	"strings"
 	"testing"
+	"testing/fstest"
 
 	"pairspan/sources"
 )
@@ -37,6 +38,8 @@ func beside(name string) []Change {
 		return []Change{{"need.secret_rate_bps", "100"}}
 	case r.only == renewing:
 		return []Change{{"need.aes256_renewal_s", "60"}}
+	case strings.HasPrefix(name, "source.power_scan"):
+		return []Change{{"source.power_scan", "{ file: power-scan.csv, power_mw: 2, order: 2 }"}}
 	case strings.HasPrefix(name, "finite_key"):
 		return []Change{{"finite_key", "{ sifted_bits_per_block: 2.0e+6, epsilon_total: 2.0e-10 }"}}
 	case strings.HasPrefix(name, "source.state.visibility"):
@@ -50,7 +53,10 @@ func beside(name string) []Change {
 // Every entry of the table can be set by a change, and is read back where
 // Number says it lives; every example of the starting file is valid.
 func TestEveryEntryRoundTrips(t *testing.T) {
-	base := mustRead(t, errBase)
+	base, err := Read(fstest.MapFS{"power-scan.csv": {Data: []byte(plainScan)}}, "x.yaml", []byte(errBase))
+	if err != nil {
+		t.Fatal(err)
+	}
 	for i := range table {
 		r := &table[i]
 		if r.form == ownForm || r.form == fileForm {

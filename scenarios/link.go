@@ -133,7 +133,7 @@ func (s *Scenario) arm(i int, lengthKm float64) keyrate.Arm {
 		Misalignment:  a.MisalignmentError,
 		PMDError:      link.PMDError(link.MeanDelay(s.pmd(i), lengthKm), src.WavelengthNm[i], s.Bandwidth(i)),
 		BackgroundHz:  a.BackgroundCountsHz,
-		UnpairedHz:    src.UnpairedHz[i],
+		UnpairedHz:    s.Unpaired(i),
 	}
 	if s.Pulsed() {
 		arm.SpreadFWHMPs = s.clockSpread(i, lengthKm)

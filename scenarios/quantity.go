@@ -87,12 +87,13 @@ func (s *Scenario) fixPump() {
 	src := &s.Source
 	src.PumpAuto = false
 	emission, err := s.Emission()
-	if !src.Counted.Used || err != nil {
+	if !src.EmissionMeasured() || err != nil {
 		return
 	}
 	s.fixLoss(Alice)
 	s.fixLoss(Bob)
-	src.Counted.Used = false
+	src.UnpairedHz = [2]float64{s.Unpaired(Alice), s.Unpaired(Bob)}
+	src.Counted.Used, src.PowerScan.Used = false, false
 	if s.Pulsed() {
 		src.PairsPerPulse = emission.PairRateHz / src.PulseRateHz
 	} else {

@@ -32,8 +32,9 @@ func TestDefaults(t *testing.T) {
 		Title: "Test link",
 		Source: Source{
 			PairRateHz: 2e6, PulseRateHz: nan, PairsPerPulse: nan, SchmidtNumber: nan, MaxPairRateHz: nan, MaxPairsPerPulse: nan,
-			Counted: Counted{SinglesHz: [2]float64{nan, nan}, CoincidencesHz: nan, WindowPs: nan, BackgroundHz: [2]float64{nan, nan}},
-			State:   sources.FromTangle(0.86), MeasuredCAR: nan, WavelengthNm: [2]float64{1550, 1550},
+			Counted:   Counted{SinglesHz: [2]float64{nan, nan}, CoincidencesHz: nan, WindowPs: nan, BackgroundHz: [2]float64{nan, nan}},
+			PowerScan: PowerScan{PowerMW: nan, Order: nan, LinearNoiseHzPerMW: [2]float64{nan, nan}},
+			State:     sources.FromTangle(0.86), MeasuredCAR: nan, WavelengthNm: [2]float64{1550, 1550},
 			PumpPulseFWHMPs: nan, BandwidthFWHMNm: [2]float64{0.8, nan},
 		},
 		Arms:       [2]Arm{alice, bob},

@@ -64,6 +64,7 @@ type Source struct {
 	PairsPerPulse    float64 // pulsed; NaN: continuous or counted
 	SchmidtNumber    float64 // modes per polarisation, >= 1; NaN: Poisson
 	Counted          Counted // where the emission was counted at the source
+	PowerScan        PowerScan
 	MaxPairRateHz    float64 // ceiling of a continuous source; NaN: not stated
 	MaxPairsPerPulse float64 // ceiling of a pulsed source; NaN: not stated
 

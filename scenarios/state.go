@@ -34,6 +34,7 @@ var laboratoryFiles = []struct {
 }{
 	{"source.state.density_matrix", (*reader).matrix},
 	{"source.state.counts", (*reader).counts},
+	{powerScanEntry + ".file", (*reader).powerScan},
 }
 
 // readLaboratory reads the laboratory files that the scenario names.

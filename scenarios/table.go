@@ -23,7 +23,7 @@ var titleRows = []row{
 	},
 }
 
-var sourceRows = slices.Concat(emissionRows, countedRows, stateRows, lightRows)
+var sourceRows = slices.Concat(emissionRows, countedRows, scanRows, stateRows, lightRows)
 
 var emissionRows = []row{
 	{

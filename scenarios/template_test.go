@@ -40,7 +40,7 @@ var leftOut = regexp.MustCompile(`^( *)#( *[a-z_]+:.*)$`)
 // it, states that entry at the right place: it is known there, and what may
 // be wrong is only what it cannot stand beside.
 func TestStarterCanBeUncommented(t *testing.T) {
-	files := fstest.MapFS{"state.csv": {Data: []byte(bellCSV)}, "counts.csv": {Data: []byte(bellCounts)}}
+	files := fstest.MapFS{"state.csv": {Data: []byte(bellCSV)}, "counts.csv": {Data: []byte(bellCounts)}, "power-scan.csv": {Data: []byte(plainScan)}}
 	lines := strings.Split(Starter(), "\n")
 	n := 0
 	for i, line := range lines {

@@ -93,17 +93,13 @@ func likeliestForm(header []csvCell) (likeliest LaboratoryForm, known bool) {
 	return likeliest, known
 }
 
-// allHeaders lists the headers of all forms.
+// allHeaders lists the headers of all forms, without what may be left out.
 func allHeaders() string {
 	var forms []string
 	for _, headers := range laboratoryForms {
 		var either []string
 		for _, h := range headers {
-			header := strings.Join(h.columns, ",")
-			for _, column := range h.optional {
-				header += "[," + column + "]"
-			}
-			either = append(either, header)
+			either = append(either, strings.Join(h.columns, ","))
 		}
 		forms = append(forms, headers[0].name+": "+strings.Join(either, " or "))
 	}

@@ -44,8 +44,8 @@ type Band struct {
 // Bins returns how many bins an arm's band has.
 func (b *Band) Bins(arm int) int { return b.Last[arm] - b.First[arm] + 1 }
 
-// WiderBins returns how many bins the wider of both bands has.
-func (b *Band) WiderBins() int { return max(b.Bins(0), b.Bins(1)) }
+// AllBins returns how many bins both bands have together.
+func (b *Band) AllBins() int { return b.Bins(0) + b.Bins(1) }
 
 // WidthNm returns the width of an arm's band; 0 where the map has a single bin,
 // whose width it does not tell.

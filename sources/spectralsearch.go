@@ -34,15 +34,15 @@ type RatedBand struct {
 // BandChoice is the outcome of a search for pass bands.
 type BandChoice struct {
 	Best     RatedBand
-	ByWidth  []RatedBand // the best whose wider band has n bins, from the most bins to one; without the n that no pairs pass
+	ByWidth  []RatedBand // the best of each width, from the whole map to single bins; widths that no pairs pass are left out
 	Compared int         // pairs of pass bands with any pairs
 }
 
 // BestBands returns the pair of pass bands, each of contiguous bins, that is
-// worth most, and the best of each width: exactly what a comparison of all would
-// return, on any number of cores. Of equal ones the narrower counts, bins of
-// both arms together, then the one of lower wavelengths. Bands without pairs are
-// left out.
+// worth most, and the best of each width, which is the number of bins of both
+// bands together: exactly what a comparison of all would return, on any number
+// of cores. Of equal ones the narrower counts, then the one of lower wavelengths.
+// Bands without pairs are left out.
 //
 // Worth and Bound are called by several at once. When the context ends first its
 // error is returned.
@@ -54,7 +54,7 @@ type BandChoice struct {
 // taken by worth and order alone.
 func (m *SpectralMap) BestBands(ctx context.Context, search BandSearch) (BandChoice, error) {
 	c := bandContest{m: m, search: search, ctx: ctx}
-	widest := max(len(m.CentreNm[0]), len(m.CentreNm[1]))
+	widest := len(m.CentreNm[0]) + len(m.CentreNm[1])
 	c.best, c.level = make([]RatedBand, widest+1), make([]atomic.Uint64, widest+1)
 	for n := range c.best {
 		c.level[n].Store(math.Float64bits(math.Inf(-1)))
@@ -103,8 +103,8 @@ func (m *SpectralMap) promising() [][2]int {
 	return bands
 }
 
-// bandContest is a search under way. Bands are compared by width, the bins of
-// the wider of both; place 0 stays empty.
+// bandContest is a search under way. Bands are compared with those as wide; the
+// places of the widths 0 and 1 stay empty.
 type bandContest struct {
 	m      *SpectralMap
 	search BandSearch
@@ -157,7 +157,7 @@ func (c *bandContest) compare(alice [2]int) error {
 // enter rates a band unless it cannot be the best of its width.
 func (c *bandContest) enter(b Band, sum *bandSum) {
 	b.StateError = sum.errors()
-	n := b.WiderBins()
+	n := b.AllBins()
 	enough := math.Float64frombits(c.level[n].Load())
 	if c.search.Bound != nil && c.search.Bound(b, enough) < enough || c.ctx.Err() != nil {
 		return
@@ -180,7 +180,7 @@ func (b *RatedBand) better(than *RatedBand) bool {
 		return b.Worth > than.Worth
 	}
 	return cmp.Or(
-		cmp.Compare(b.Bins(0)+b.Bins(1), than.Bins(0)+than.Bins(1)),
+		cmp.Compare(b.AllBins(), than.AllBins()),
 		slices.Compare(b.First[:], than.First[:]),
 		slices.Compare(b.Last[:], than.Last[:])) < 0
 }

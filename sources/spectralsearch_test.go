@@ -22,8 +22,8 @@ func exhaustive(m *SpectralMap, worth func(Band) float64) (best RatedBand, byWid
 				return
 			}
 			r := RatedBand{b, worth(b)}
-			if old, ok := byWidth[b.WiderBins()]; !ok || r.Worth > old.Worth {
-				byWidth[b.WiderBins()] = r
+			if old, ok := byWidth[b.AllBins()]; !ok || r.Worth > old.Worth {
+				byWidth[b.AllBins()] = r
 			}
 			if best.Share == 0 || r.Worth > best.Worth {
 				best = r
@@ -94,8 +94,8 @@ func TestBestBandsIsExhaustive(t *testing.T) {
 					t.Errorf("seed %d, %s: %d widths, want %d", seed, name, len(got.ByWidth), len(byWidth))
 				}
 				for _, b := range got.ByWidth {
-					if b != byWidth[b.WiderBins()] {
-						t.Errorf("seed %d, %s: of %d bins %+v, want %+v", seed, name, b.WiderBins(), b, byWidth[b.WiderBins()])
+					if b != byWidth[b.AllBins()] {
+						t.Errorf("seed %d, %s: of %d bins %+v, want %+v", seed, name, b.AllBins(), b, byWidth[b.AllBins()])
 					}
 				}
 			}

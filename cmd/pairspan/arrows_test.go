@@ -15,11 +15,14 @@ var arrows = map[string][]string{
 	"pairspan/keyrate":        {"pairspan/link"},
 	"pairspan/scenarios":      {"pairspan/sources", "pairspan/link", "pairspan/keyrate"},
 	"pairspan/scenarios/plan": {"pairspan/scenarios", "pairspan/sources", "pairspan/link", "pairspan/keyrate"},
-	"pairspan/cmd/pairspan/internal/report": {
+	"pairspan/scenarios/source": {
 		"pairspan/scenarios/plan", "pairspan/scenarios", "pairspan/sources", "pairspan/link", "pairspan/keyrate",
 	},
+	"pairspan/cmd/pairspan/internal/report": {
+		"pairspan/scenarios/plan", "pairspan/scenarios/source", "pairspan/scenarios", "pairspan/sources", "pairspan/link", "pairspan/keyrate",
+	},
 	"pairspan/cmd/pairspan": {
-		"pairspan/cmd/pairspan/internal/report", "pairspan/scenarios/plan", "pairspan/scenarios",
+		"pairspan/cmd/pairspan/internal/report", "pairspan/scenarios/plan", "pairspan/scenarios/source", "pairspan/scenarios",
 		"pairspan/sources", "pairspan/link", "pairspan/keyrate",
 	},
 }
@@ -27,8 +30,10 @@ var arrows = map[string][]string{
 // direct are the packages of ours that a package may import itself, where
 // that is fewer than it rests on.
 var direct = map[string][]string{
-	"pairspan/cmd/pairspan/internal/report": {"pairspan/scenarios/plan"},
-	"pairspan/cmd/pairspan":                 {"pairspan/cmd/pairspan/internal/report", "pairspan/scenarios/plan", "pairspan/scenarios"},
+	"pairspan/cmd/pairspan/internal/report": {"pairspan/scenarios/plan", "pairspan/scenarios/source"},
+	"pairspan/cmd/pairspan": {
+		"pairspan/cmd/pairspan/internal/report", "pairspan/scenarios/plan", "pairspan/scenarios/source", "pairspan/scenarios",
+	},
 }
 
 // TestArrows holds the direction in which packages know of each other.

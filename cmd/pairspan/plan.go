@@ -1,11 +1,9 @@
 package main
 
 import (
-	"bytes"
 	"errors"
 	"fmt"
 	"io"
-	"path/filepath"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -130,18 +128,10 @@ func (c *commands) plan(cmd *cobra.Command, o output, a axis, load func() (*scen
 			return fmt.Errorf("--against %w", err)
 		}
 	}
-	var b bytes.Buffer // whole or not at all
-	if err := write(&b, p); err != nil {
-		return outputError{err}
-	}
-	if o.dir != "" {
-		if err := report.Folder(o.dir, p); err != nil {
-			return outputError{err}
-		}
-		fmt.Fprintln(c.errs, "Report: "+filepath.Join(o.dir, report.Page))
-	}
-	if _, err := c.out.Write(b.Bytes()); err != nil {
-		return outputError{err}
+	if err := c.deliver(o.dir,
+		func(w io.Writer) error { return write(w, p) },
+		func() (string, error) { return report.Page, report.Folder(o.dir, p) }); err != nil {
+		return err
 	}
 	c.status = status(p.Cases[0].Answer.Outcome)
 	return nil

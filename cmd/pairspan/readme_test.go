@@ -6,6 +6,8 @@ import (
 	"regexp"
 	"strings"
 	"testing"
+
+	"pairspan/scenarios"
 )
 
 const readme = "../../README.md"
@@ -15,13 +17,17 @@ var block = regexp.MustCompile("(?s)(?:`([a-z-]+\\.yaml)`:\n\n)?```(console|yaml
 
 // TestReadme runs the README's commands, in order and in one folder, and
 // compares what they print. A yaml block whose line before names a file is
-// that file. With -update the README is pinned anew.
+// that file, and the folder scenarios is the repository's. With -update the
+// README is pinned anew.
 func TestReadme(t *testing.T) {
 	text, err := os.ReadFile(readme)
 	if err != nil {
 		t.Fatal(err)
 	}
 	t.Chdir(t.TempDir())
+	if err := os.CopyFS("scenarios", scenarios.Examples); err != nil {
+		t.Fatal(err)
+	}
 	ran := 0
 	var b bytes.Buffer
 	last := 0

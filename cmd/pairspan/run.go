@@ -85,12 +85,12 @@ func (c *commands) root() *cobra.Command {
 		Version: version,
 		Args:    cobra.NoArgs,
 		RunE: func(cmd *cobra.Command, _ []string) error {
-			return errors.New("a command is missing: plan, demo, new or entries; pairspan --help says more")
+			return errors.New("a command is missing: plan, demo, source, new or entries; pairspan --help says more")
 		},
 		SilenceErrors:     true,
 		SilenceUsage:      true,
 		CompletionOptions: cobra.CompletionOptions{DisableDefaultCmd: true},
 	}
-	root.AddCommand(c.planCommand(), c.demoCommand(), c.newCommand(), c.entriesCommand())
+	root.AddCommand(c.planCommand(), c.demoCommand(), c.sourceCommand(), c.newCommand(), c.entriesCommand())
 	return root
 }

@@ -31,9 +31,12 @@ func wantElasticity(t *testing.T, s *scenarios.Scenario, entry string, want, tol
 // quietLink is a link at low rates without noise, dead time, multi-pairs or
 // accidentals that would matter, so that its rate is a product.
 var quietLink = []set{
-	{"source.pair_rate_hz", "1"}, {"window_ps", "600"},
-	{"detectors.free_running.dark_counts_hz", "0"}, {"detectors.free_running.dead_time_ns", "0"},
-	{"detectors.nanowire.dark_counts_hz", "0"}, {"detectors.nanowire.dead_time_ns", "0"},
+	{"source.pair_rate_hz", "1"},
+	{"window_ps", "600"},
+	{"detectors.free_running.dark_counts_hz", "0"},
+	{"detectors.free_running.dead_time_ns", "0"},
+	{"detectors.nanowire.dark_counts_hz", "0"},
+	{"detectors.nanowire.dead_time_ns", "0"},
 }
 
 // TestElasticityOfAProduct: the usable rate without noise is

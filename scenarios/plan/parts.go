@@ -93,13 +93,16 @@ func (a *asker) inTheWay(now reply) []PartFactor {
 	return found
 }
 
-// bestPump asks at the best pair rate up to the source's ceiling.
+// bestPump asks at the best pair rate up to the source's ceiling; false where
+// none is stated, or the pump is searched anyway.
 func (a *asker) bestPump(now reply) (reply, bool) {
+	free := a.left()
 	ceiling, ok := a.s.Ceiling()
-	if !ok {
+	if !ok || free.MaxPairRateHz > 0 {
 		return reply{}, false
 	}
-	p := now.link.Best(now.setting, keyrate.Free{MaxPairRateHz: ceiling, Window: a.s.WindowAuto})
+	free.MaxPairRateHz = ceiling
+	p := now.link.Best(now.setting, free)
 	return reply{now.link, p, now.link.Key(p)}, true
 }
 

@@ -40,6 +40,10 @@ func New(ctx context.Context, s *scenarios.Scenario, version string, progress fu
 	if p.Buying, err = buying(ctx, asked, p.Cases); err != nil {
 		return nil, err
 	}
+	if p.Cases[0].Limits, err = asked[0].limits(ctx, p.Cases[0].Curve); err != nil {
+		return nil, err
+	}
+	p.Needs = needs(s)
 	p.Cases[0].Acceptance = asked[0].acceptance()
 	if err = asked[0].addServes(ctx, &p.Cases[0], toKm); err != nil {
 		return nil, err
@@ -70,6 +74,8 @@ func (n named) answered() Case {
 		LossBudget:       lossBudget(n.s),
 		Installed:        n.point(n.s.DistanceKm()),
 		QBERParts:        n.qberParts(),
+		Best:             n.best(),
+		Block:            n.block(),
 	}
 	for _, ch := range n.changes {
 		c.Changes = append(c.Changes, Change{ch.Entry, ch.Value})

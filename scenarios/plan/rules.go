@@ -16,6 +16,7 @@ var nan = math.NaN()
 var rules = []rule{
 	{"state-mended", repaired("state-mended")},
 	{"state-fits-badly", repaired("state-fits-badly")},
+	{"power-scan", repaired("power-scan")},
 	{"efficiency-twice", efficiencyTwice},
 	{"coincidences-as-pairs", coincidencesAsPairs},
 	{"too-many-pairs", tooManyPairs},
@@ -98,7 +99,7 @@ func coincidencesAsPairs(w *watch) []doubt {
 		mostPerPulse        = 1.0
 	)
 	src := &w.s.Source
-	if src.Counted.Used {
+	if src.EmissionMeasured() || src.PumpAuto {
 		return nil
 	}
 	const sentence = "%s is little for a source; if these are coincidences counted behind both arms, the source makes %s."
@@ -128,6 +129,8 @@ func emissionEntry(s *scenarios.Scenario) string {
 	switch {
 	case s.Source.Counted.Used:
 		return "source.counted"
+	case s.Source.PowerScan.Used:
+		return "source.power_scan"
 	case s.Pulsed():
 		return "source.pairs_per_pulse"
 	}
@@ -145,14 +148,14 @@ func pump(by float64) func(*scenarios.Scenario) {
 func tooManyPairs(w *watch) []doubt {
 	const most = 0.2
 	pairs := w.now.rate.PairsPerSlot
-	if !(pairs > most) {
+	if !(pairs > most) || w.s.Source.PumpAuto { // searched: it weighs that already
 		return nil
 	}
 	d := doubt{
 		emissionEntry(w.s),
 		fmt.Sprintf("%s pairs per slot: several pairs at once make most of the errors above some %s.", bare(pairs), plain(most)), nil,
 	}
-	if !w.s.Source.Counted.Used {
+	if !w.s.Source.EmissionMeasured() {
 		d.suspect = pump(most / pairs)
 	}
 	return []doubt{d}

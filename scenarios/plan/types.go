@@ -148,7 +148,7 @@ type Point struct {
 	DistanceKm          float64     `json:"distance_km"`
 	LengthKm            PerArm      `json:"length_km"`
 	LossDB              PerArm      `json:"loss_db"`
-	PairRateHz          float64     `json:"pair_rate_hz"`
+	PairRateHz          float64     `json:"pair_rate_hz"` // the ceiling where it is to be searched but no state is known
 	PairsPerSlot        *float64    `json:"pairs_per_slot"`
 	SlotsHz             *float64    `json:"slots_hz"`
 	WindowPs            *float64    `json:"window_ps"`

@@ -5,8 +5,8 @@ package plan
 
 // Best is the operating point that would make most usable key at the
 // installed length, at worst, with every setting free that the scenario
-// allows: the pair rate where a ceiling is stated, the window, and with
-// finite blocks the share of the key basis.
+// allows: the pair rate where a ceiling is stated, the window (even where the
+// file fixes it), and with finite blocks the share of the key basis.
 type Best struct {
 	Free          []string `json:"free"` // entries that were searched
 	PairRateHz    float64  `json:"pair_rate_hz"`
@@ -15,7 +15,7 @@ type Best struct {
 	KeyBasisShare float64  `json:"key_basis_share"`
 	UsableRateBps float64  `json:"usable_rate_bps"`
 	Factor        *float64 `json:"factor"`   // over the rate as described; null from zero
-	Keeps95       *Span    `json:"keeps_95"` // pair rates that keep 95 % of it; null where the pump is not free or there is no key
+	Keeps95       *Span    `json:"keeps_95"` // pair rates that keep 95 % of it, window and share held; null where the pump is not free or there is no key
 	Sentence      string   `json:"sentence"`
 }
 
@@ -29,18 +29,19 @@ type Span struct {
 // its own best setting, at the distances of the curve.
 type Limits struct {
 	Points   []LimitPoint `json:"points"`
-	HeldBack *PartFactor  `json:"held_back"` // the limit that would raise the rate most at the installed length
+	HeldBack *PartFactor  `json:"held_back"` // what would raise the rate most at the installed length: "setting" over the link as described, "state" or "detectors" over its best setting; null where nothing would
 	Sentence string       `json:"sentence"`
 }
 
 // LimitPoint is one distance of the limits.
 type LimitPoint struct {
-	DistanceKm          float64 `json:"distance_km"`
-	AsDescribedBps      float64 `json:"as_described_bps"`
-	AtBestBps           float64 `json:"at_best_setting_bps"`
-	PerfectStateBps     float64 `json:"perfect_state_bps"`
-	PerfectDetectorsBps float64 `json:"perfect_detectors_bps"`
-	RepeaterlessBps     float64 `json:"repeaterless_bps"` // of a direct line of the same loss, one mode a slot
+	DistanceKm          float64  `json:"distance_km"`
+	AsDescribedBps      float64  `json:"as_described_bps"`
+	AtBestBps           float64  `json:"at_best_setting_bps"`
+	PerfectStateBps     float64  `json:"perfect_state_bps"`
+	PerfectDetectorsBps float64  `json:"perfect_detectors_bps"`
+	RepeaterlessBps     *float64 `json:"repeaterless_bps"` // bound of a direct line of both arms' loss, one mode a slot; null where nothing is lost
+	SlotsHz             float64  `json:"slots_hz"`         // that it counts: those of the best setting
 }
 
 // Serve is the least or the most of one entry that still meets the need, all
@@ -89,9 +90,10 @@ type Block struct {
 	SmallestSiftedBits *float64 `json:"smallest_sifted_bits"` // block with any key; null where none has
 	AES256PerHour      float64  `json:"aes256_per_hour"`      // AES-256 keys
 	AES256PerDay       float64  `json:"aes256_per_day"`
-	BestSiftedBits     *float64 `json:"best_sifted_bits"`     // block that makes most key within a day's sifting; null without key
+	BestSiftedBits     *float64 `json:"best_sifted_bits"`     // block that makes most key, at most a day's sifting with the duty cycle counted; null without key
 	BestKeyBasisShare  *float64 `json:"best_key_basis_share"` // with that block
 	BestUsableRateBps  *float64 `json:"best_usable_rate_bps"` // with both
+	EnoughSiftedBits   *float64 `json:"enough_sifted_bits"`   // smallest block that makes 95 % of that at the same settings
 	SameBasisSecretBps float64  `json:"key_basis_secret_bps"` // asymptotic rate of the key basis alone: what ever larger blocks tend to
 	Sentence           string   `json:"sentence"`
 }

@@ -73,6 +73,9 @@ func (a *asker) watch() *watch {
 		if p.WindowS == 0 {
 			p.WindowS = nan
 		}
+		if a.s.Source.PumpAuto {
+			p.PairRateHz = nan // at its ceiling, which nobody may set
+		}
 		return &watch{s: a.s, now: reply{l, p, l.Key(p)}}
 	}
 	now := a.at(km, nominal, nil)

@@ -22,14 +22,14 @@ func (a *asker) sentence(ans *Answer, p *Point) string {
 	case NoNeed:
 		return a.noNeedSentence(ans, km)
 	case Met:
-		return fmt.Sprintf("Yes, with %s to spare: %s at %s, %s times the %s needed, for %s, analysers aligned.",
-			spare(ans), against(*ans.UsableRateBps, a.need)+" bit/s", km, two(*ans.TimesNeed), a.needed(), a.anyState())
+		return fmt.Sprintf("Yes, with %s to spare: %s at %s, %s times the %s, for %s, analysers aligned.",
+			spare(ans), against(*ans.UsableRateBps, a.need)+" bit/s", km, two(*ans.TimesNeed), a.needed(*ans.UsableRateBps, ""), a.anyState())
 	case MetIfNominal:
-		return fmt.Sprintf("Not for sure: a %s alone makes sure of only %s of the %s needed at %s; a Werner state would give %s. %s",
-			a.figure("of "), against(*ans.UsableRateBps, a.need), a.needed(), km, against(ans.Nominal.UsableRateBps, a.need), twoVisibilities)
+		return fmt.Sprintf("Not for sure: a %s alone makes sure of only %s of the %s; a Werner state would give %s. %s",
+			a.figure("of "), against(*ans.UsableRateBps, a.need), a.needed(*ans.UsableRateBps, " at "+km), against(ans.Nominal.UsableRateBps, a.need), twoVisibilities)
 	case MetIfBest:
-		return fmt.Sprintf("Only with the best state: %s of the %s needed at %s for a dephased pair of %s, %s for any. %s",
-			against(ans.AtBest.UsableRateBps, a.need), a.needed(), km, a.figure(""), against(*ans.UsableRateBps, a.need), twoVisibilities)
+		return fmt.Sprintf("Only with the best state: %s of the %s for a dephased pair of %s, %s for any. %s",
+			against(ans.AtBest.UsableRateBps, a.need), a.needed(ans.AtBest.UsableRateBps, " at "+km), a.figure(""), against(*ans.UsableRateBps, a.need), twoVisibilities)
 	}
 	return a.notMetSentence(ans, p)
 }
@@ -41,9 +41,9 @@ func (a *asker) notMetSentence(ans *Answer, p *Point) string {
 	if ans.AtBest != nil {
 		best, who, aim = ans.AtBest.UsableRateBps, "even with the best state ", "To be sure of "
 	}
-	s := fmt.Sprintf("No: %s%s of the %s needed at %s. ", who, against(best, a.need), a.needed(), distance(p.DistanceKm))
+	s := fmt.Sprintf("No: %s%s of the %s. ", who, against(best, a.need), a.needed(best, " at "+distance(p.DistanceKm)))
 	if ans.MarginDB != nil {
-		s += fmt.Sprintf("%s%s, %s dB of loss must go.", aim, plain(a.need), two(-*ans.MarginDB))
+		s += fmt.Sprintf("%s%s, %s dB of loss must go.", aim, a.neededBps(best), two(-*ans.MarginDB))
 	} else {
 		s += "No loss that could go would be enough."
 	}
@@ -84,10 +84,7 @@ func (a *asker) noNeedSentence(ans *Answer, km string) string {
 
 func (a *asker) unknownSentence(ans *Answer) string {
 	const start = "No answer yet: a pair rate says nothing of entanglement. "
-	aim := "any key"
-	if a.need > 0 {
-		aim = a.needed()
-	}
+	aim := a.aim()
 	switch {
 	case ans.LeastTangleAtBest == nil:
 		return start + "On this link no state is enough for " + aim + "."
@@ -110,9 +107,6 @@ func (a *asker) firstSentence(ans *Answer, p *Point) string {
 	}
 	return " First in the way: " + a.inWords(ans.FirstInTheWay.Part, p) + "."
 }
-
-// needed is the need in the person's own figure.
-func (a *asker) needed() string { return plain(a.need) + " bit/s" }
 
 // anyState says for which states the judged rate holds.
 func (a *asker) anyState() string {
@@ -182,6 +176,7 @@ var partWords = map[string]string{
 	"timing":        "the spread of the arrival times",
 	"pump":          "the pair rate",
 	"fibre":         "the fibre",
+	"setting":       "the setting",
 }
 
 // InWords returns a part of the link as people call it.

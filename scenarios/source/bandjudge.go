@@ -1,0 +1,209 @@
+package source
+
+import (
+	"fmt"
+	"math"
+
+	"pairspan/keyrate"
+	"pairspan/link"
+	"pairspan/scenarios"
+	"pairspan/sources"
+)
+
+const psPerSecond = 1e12
+
+// BandJudge tells what a pair of pass bands in front of a source is worth on a
+// link at its installed distance. It is safe for use by several at once.
+//
+// The scenario's pair rate is that of the whole map. A band passes its share of
+// it, and pairs of which one photon passes stay as light without a partner in
+// that photon's arm, besides what the scenario states. The band's width takes the
+// place of the scenario's bandwidth and its middle that of the wavelength, where
+// the map tells them. The state is that of the mixture, the analysers aligned to
+// it. All else is the scenario's.
+type BandJudge struct {
+	start  keyrate.Link // without arms, spread and state
+	setup  keyrate.OperatingPoint
+	free   keyrate.Free // MaxPairRateHz is that of the whole map
+	jitter [3]float64   // FWHM of both detectors and the clock, ps
+	arms   [2][][]armBand
+}
+
+// armBand is one arm behind one of its bands.
+type armBand struct {
+	arm          keyrate.Arm
+	dispersionPs float64 // spread over the band, signed
+	coherencePs  float64
+}
+
+// NewBandJudge returns the judge of a map's pass bands on a scenario's link. The
+// error names a wavelength at which the loss of the fibre is not known.
+func NewBandJudge(s *scenarios.Scenario, m *sources.SpectralMap) (*BandJudge, error) {
+	bare, err := withoutCounts(s)
+	if err != nil {
+		return nil, err
+	}
+	j := &BandJudge{setup: s.Setting(), start: bare.Link(s.DistanceKm(), sources.Nominal)}
+	j.free = keyrate.Free{Window: s.WindowAuto, KeyShare: s.KeyShareAuto}
+	if s.Source.PumpAuto {
+		j.free.MaxPairRateHz = j.setup.PairRateHz
+	}
+	j.jitter = [3]float64{
+		s.Detector(s.Arms[scenarios.Alice].Detector).JitterFWHMPs,
+		s.Detector(s.Arms[scenarios.Bob].Detector).JitterFWHMPs, s.ClockJitterFWHMPs,
+	}
+	for arm := range j.arms {
+		edges := m.EdgeNm[arm]
+		j.arms[arm] = make([][]armBand, len(edges)-1)
+		for first := range j.arms[arm] {
+			for last := first + 1; last < len(edges); last++ {
+				band, err := behindBand(bare, arm, edges[first], edges[last])
+				if err != nil {
+					return nil, err
+				}
+				j.arms[arm][first] = append(j.arms[arm][first], band)
+			}
+		}
+	}
+	return j, nil
+}
+
+// withoutCounts returns the scenario with both bandwidths, and the losses that
+// were counted at its source, written out: those were counted without the pass
+// bands and do not change with them.
+func withoutCounts(s *scenarios.Scenario) (*scenarios.Scenario, error) {
+	emission, err := s.Emission()
+	if err != nil {
+		return nil, err
+	}
+	c := s.Clone()
+	for arm := range c.Arms {
+		if a := &c.Arms[arm]; a.FixedLossFromCounts {
+			a.FixedLossFromCounts, a.FixedLossDB = false, float64(emission.CollectionLoss[arm])
+		}
+		c.Source.BandwidthFWHMNm[arm] = s.Bandwidth(arm)
+	}
+	return c, nil
+}
+
+// behindBand returns an arm behind the pass band between two wavelengths.
+func behindBand(s *scenarios.Scenario, arm int, fromNm, toNm float64) (armBand, error) {
+	c := s.Clone()
+	wavelength, width := &c.Source.WavelengthNm[arm], &c.Source.BandwidthFWHMNm[arm]
+	*wavelength = (fromNm + toNm) / 2
+	if toNm > fromNm {
+		*width = toNm - fromNm
+	}
+	km := c.DistanceKm()
+	length, a := c.Lengths(km)[arm], &c.Arms[arm]
+	if class, _ := link.ClassByName(a.Fibre); !scenarios.Stated(a.LossDBPerKm) && !scenarios.Stated(a.MeasuredLossDB) && length > 0 {
+		if _, _, known := class.Attenuation(*wavelength); !known {
+			return armBand{}, fmt.Errorf("the loss of %s fibre at %.6g nm, in the middle of a pass band of %s, is not known: state arms.%s.loss_db_per_km",
+				a.Fibre, *wavelength, armNames[arm], armEntries[arm])
+		}
+	}
+	dispersion := a.DispersionPsPerNmKm
+	if !scenarios.Stated(dispersion) {
+		dispersion = link.Dispersion(*wavelength)
+	}
+	return armBand{
+		arm:          c.Link(km, sources.Nominal).Arms[arm],
+		dispersionPs: dispersion * length * *width,
+		coherencePs:  link.CoherenceTime(*wavelength, *width),
+	}, nil
+}
+
+// The arms as people are told of them, and as entries name them.
+var (
+	armNames   = [2]string{"Alice", "Bob"}
+	armEntries = [2]string{"alice", "bob"}
+)
+
+// A parting is a pair of pass bands seen as what it does to pairs one by one.
+// With a share p of the pairs passing both bands and shares u_A and u_B of them
+// leaving Alice or Bob alone with a photon, the light is that of
+//
+//	B (p + u_A)(p + u_B)/p
+//
+// pairs per second, B those of the whole map, which lose Alice's photon on the
+// way with probability u_B/(p + u_B), and Bob's with u_A/(p + u_A), independently:
+// both then arrive p B times, Alice's alone u_A B times, Bob's alone u_B B times.
+// For a source of Poisson statistics without pulses this is the same as light
+// without a partner. With pulses it keeps that light within the pulses, where it
+// was made, and it grows with the pump.
+type parting struct {
+	pairs  float64    // per pair of the whole map
+	passes [2]float64 // chance that a photon passes
+}
+
+func partingOf(b *sources.Band) parting {
+	alice, bob := b.Share+b.UnpairedShare[0], b.Share+b.UnpairedShare[1]
+	return parting{alice / b.Share * bob, [2]float64{b.Share / bob, b.Share / alice}}
+}
+
+// link returns the link behind a pair of pass bands, to be asked with the pairs
+// per second of its parting.
+func (j *BandJudge) link(b *sources.Band, through parting) keyrate.Link {
+	l := j.start
+	l.StateError = b.StateError
+	var behind [2]*armBand
+	for arm := range behind {
+		behind[arm] = &j.arms[arm][b.First[arm]][b.Last[arm]-b.First[arm]]
+		a := &l.Arms[arm]
+		*a = behind[arm].arm
+		a.Transmittance *= through.passes[arm]
+		a.UnpairedHz /= through.passes[arm] // nothing of it is lost
+	}
+	if l.PulseRateHz == 0 {
+		l.SpreadFWHMPs = link.RootSumSquare(
+			j.jitter[0], j.jitter[1], j.jitter[2],
+			max(behind[0].coherencePs, behind[1].coherencePs),
+			behind[0].dispersionPs+behind[1].dispersionPs)
+	}
+	return l
+}
+
+// setting returns the link behind a pair of pass bands, and the best setting of
+// what the scenario leaves to the planner: the pair rate is that of the parting.
+func (j *BandJudge) setting(b *sources.Band) (l keyrate.Link, p keyrate.OperatingPoint) {
+	through := partingOf(b)
+	l, p = j.link(b, through), j.setup
+	p.PairRateHz *= through.pairs
+	if j.free == (keyrate.Free{}) {
+		return l, p
+	}
+	free := j.free
+	free.MaxPairRateHz *= through.pairs
+	p = l.Best(p, free)
+	if most := j.free.MaxPairRateHz; most > 0 {
+		// What a person sets is the pair rate of the source.
+		p.PairRateHz = min(keyrate.Round3(p.PairRateHz/through.pairs, math.Inf(1)), most) * through.pairs
+	}
+	return l, p
+}
+
+// Worth returns the usable rate in bit/s, at the best setting. Where there is
+// none it is negative: above −1 where blocks are too short for a key, the more
+// the greater the asymptotic rate; below that by how far the secret fraction is
+// from zero with the narrowest window, even shares and the pump at its ceiling,
+// where these are free.
+func (j *BandJudge) Worth(b sources.Band) float64 {
+	l, p := j.setting(&b)
+	r := l.Key(p)
+	if worth := worthOfKey(&r); worth > noKey {
+		return worth
+	}
+	return j.worthWithoutKey(&b)
+}
+
+// worthWithoutKey returns the worth of a band that gives no key.
+func (j *BandJudge) worthWithoutKey(b *sources.Band) float64 {
+	through := partingOf(b)
+	l, p := j.link(b, through), j.setup
+	p.PairRateHz *= through.pairs
+	if j.free.Window {
+		p.WindowS = leastWindowS
+	}
+	r := l.Key(p)
+	return noKey + wantOf(&l, &r)
+}
