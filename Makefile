@@ -8,6 +8,7 @@ DEMO     ?= demo-report
 BIN     := .build/pairspan
 ASSETS  := cmd/pairspan/internal/report/assets
 LIBRARY := $(ASSETS)/echarts.min.js
+AXE     := .npm/node_modules/axe-core/axe.min.js
 SOURCES := cmd link keyrate sources scenarios
 TOOL    := $(GO) tool -modfile=.tools/go.mod
 
@@ -19,7 +20,7 @@ CHROMIUM ?= $(shell command -v chromium || command -v chromium-browser || comman
 export CHROMIUM
 
 .DEFAULT_GOAL := help
-.PHONY: help build demo test lint bench golden clean charts fuzz race want-charts not-run
+.PHONY: help build demo test lint bench golden clean charts fuzz race pictures want-charts not-run
 
 help: ## this list
 	@awk -F ':.*## ' '/^[a-z]+:.*## / { printf "  make %-8s %s\n", $$1, $$2 }' $(MAKEFILE_LIST)
@@ -63,9 +64,13 @@ golden: ## pin the golden files to the present output; say why in the commit
 	if [ -z "$$packages" ]; then echo "no package has golden files"; exit 0; fi; \
 	$(GO) test $$packages -update
 
-charts: $(LIBRARY) ## fetch the chart library of the report (needs npm)
+pictures: want-charts ## the README's pictures, from the demo's report (needs Chromium)
+	mkdir -p testdata/pictures
+	CI=true $(GO) test -count=1 -run '^TestPictures$$' ./cmd/pairspan/internal/report -pictures '$(CURDIR)/testdata/pictures'
 
-$(LIBRARY): .npm/package-lock.json .npm/package.json
+charts: $(LIBRARY) $(AXE) ## fetch the chart library of the report, and axe-core for its tests (needs npm)
+
+$(LIBRARY) $(AXE) &: .npm/package-lock.json .npm/package.json
 	@command -v npm >/dev/null || { echo "charts need npm: apt-get install npm"; exit 1; }
 	cd .npm && npm ci --no-progress
 	cp .npm/node_modules/echarts/LICENSE             $(ASSETS)/echarts.LICENSE
@@ -74,13 +79,14 @@ $(LIBRARY): .npm/package-lock.json .npm/package.json
 	cp .npm/node_modules/zrender/LICENSE             $(ASSETS)/zrender.LICENSE
 	cp .npm/node_modules/tslib/LICENSE.txt           $(ASSETS)/tslib.LICENSE
 	cp .npm/node_modules/echarts/dist/echarts.min.js $(LIBRARY)
+	touch $(AXE)
 
 # Charts where they can be had; without npm or network the rest goes on.
 want-charts:
-	@if $(MAKE) --no-print-directory -q $(LIBRARY) 2>/dev/null; then :; \
+	@if $(MAKE) --no-print-directory -q $(LIBRARY) $(AXE) 2>/dev/null; then :; \
 	elif ! command -v npm >/dev/null && [ "$$CI" != true ]; then \
-		echo "No charts in the report, tables only. For charts: apt-get install npm, then make charts"; \
-	elif ! $(MAKE) --no-print-directory $(LIBRARY); then \
+		[ -f $(LIBRARY) ] || echo "No charts in the report, tables only. For charts: apt-get install npm, then make charts"; \
+	elif ! $(MAKE) --no-print-directory charts; then \
 		if [ "$$CI" = true ]; then exit 1; fi; \
 		echo "No charts in the report, tables only. For charts, when npm can reach its registry: make charts"; \
 	fi
@@ -88,7 +94,7 @@ want-charts:
 # Counts the browser tests that were skipped, by asking them again.
 not-run:
 	@have_browser=false; command -v "$${CHROMIUM:-no-browser}" >/dev/null && have_browser=true; \
-	have_charts=false; [ -f $(LIBRARY) ] && have_charts=true; \
+	have_charts=false; [ -f $(LIBRARY) ] && [ -f $(AXE) ] && have_charts=true; \
 	if $$have_browser && $$have_charts; then exit 0; fi; \
 	packages=$$(grep -rl --include='*_test.go' 'func TestBrowser' $(SOURCES) | xargs -r -n1 dirname | sort -u | sed 's,^,./,'); \
 	[ -n "$$packages" ] || exit 0; \

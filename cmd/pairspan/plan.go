@@ -19,12 +19,19 @@ var formats = []struct {
 	write func(io.Writer, *plan.Plan) error
 }{{"text", report.Text}, {"json", report.JSON}, {"csv", report.CSV}}
 
-// output is where a plan goes.
-type output struct{ dir, format string }
+// output is where a plan goes, and whether it may leave the house.
+type output struct {
+	dir, format string
+	withhold    bool
+}
 
 func (o *output) flags(cmd *cobra.Command) {
 	cmd.Flags().StringVar(&o.dir, "out", "", "also write report.html, plan.json and curve.csv into this folder")
 	cmd.Flags().StringVar(&o.format, "format", "text", "what goes to standard output: "+formatNames())
+	cmd.Flags().BoolVar(&o.withhold, "withhold", false,
+		"for a report that leaves the house: leave out of everything written the title, names of\n"+
+			"compared cases, origins, prices and budget, and the names and text of the input files.\n"+
+			"Names of detectors stay, and the SHA-256 by which the input files can be told")
 }
 
 func formatNames() string {
@@ -127,6 +134,9 @@ func (c *commands) plan(cmd *cobra.Command, o output, a axis, load func() (*scen
 		if err := p.AddAgainst(cmd.Context(), over, progress(c.errs)); err != nil {
 			return fmt.Errorf("--against %w", err)
 		}
+	}
+	if o.withhold {
+		p = p.Withhold()
 	}
 	if err := c.deliver(o.dir,
 		func(w io.Writer) error { return write(w, p) },

@@ -103,6 +103,7 @@ func describe(s *scenarios.Scenario, version string) *Plan {
 		Title:      s.Title,
 		Program:    Program{"pairspan", version},
 		Inputs:     []Input{}, DefaultsUsed: []Default{}, Deviations: []Deviation{}, Origins: []Origin{},
+		Entries: entries(s), Withheld: []string{},
 		Cautions: cautions, References: references,
 	}
 	for _, in := range s.Inputs {

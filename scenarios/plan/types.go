@@ -9,6 +9,8 @@ type Plan struct {
 	Title        string      `json:"title"`
 	Program      Program     `json:"program"`
 	Inputs       []Input     `json:"inputs"`
+	Entries      []Entry     `json:"entries"`  // the scenario as filed: all that it states or leaves to a default
+	Withheld     []string    `json:"withheld"` // what was left out of this copy, in words; empty for a whole plan
 	DefaultsUsed []Default   `json:"defaults_used"`
 	Deviations   []Deviation `json:"deviations"`
 	Origins      []Origin    `json:"origins"`
@@ -32,6 +34,18 @@ type Input struct {
 	Name   string `json:"name"`
 	SHA256 string `json:"sha256"` // of the bytes read, hexadecimal
 	Text   string `json:"text"`
+}
+
+// Entry is one entry of the scenario as filed, stated or at its default.
+type Entry struct {
+	Entry         string   `json:"entry"`
+	Value         string   `json:"value"` // a number in the unit, or a word
+	Unit          string   `json:"unit"`  // "" for a pure number or a word
+	Meaning       string   `json:"meaning"`
+	SD            *float64 `json:"sd"`             // standard deviation as stated
+	Origin        *string  `json:"origin"`         // where it comes from, in the person's words
+	DefaultSource *string  `json:"default_source"` // null where the file states the entry
+	KnownBy       *string  `json:"known_by"`       // measured, document, stated, assumed or default; null where it is no input of the link
 }
 
 // Default is an entry that the file left out and the value used instead.

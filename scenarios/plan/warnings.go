@@ -47,7 +47,7 @@ func warnings(asked []named) []Warning {
 				}
 				warning := Warning{Rule: r.name, Entry: d.entry, Sentence: d.sentence}
 				if n.name != scenarios.FiledName {
-					warning.Sentence = "In case " + n.name + ": " + warning.Sentence
+					warning.Sentence = ofCase(n.name) + warning.Sentence
 				}
 				warning.UsableRateBps, change[id] = n.suspected(d, w)
 				found = append(found, warning)
@@ -65,6 +65,9 @@ func warnings(asked []named) []Warning {
 	})
 	return found
 }
+
+// ofCase begins a warning of a compared case.
+func ofCase(name string) string { return "In case " + name + ": " }
 
 func (a *asker) watch() *watch {
 	km := a.s.DistanceKm()

@@ -29,6 +29,7 @@ import (
 var browser struct {
 	once sync.Once
 	ctx  context.Context
+	dir  string
 	stop func()
 	err  error
 }
@@ -77,6 +78,7 @@ func startBrowser() {
 		chromedp.Flag("disable-background-networking", true), chromedp.Flag("disable-sync", true))
 	allocator, stopAllocator := chromedp.NewExecAllocator(context.Background(), options...)
 	ctx, stopBrowser := chromedp.NewContext(allocator)
+	browser.dir = dir
 	browser.stop = func() {
 		stopBrowser()
 		stopAllocator()
@@ -120,6 +122,7 @@ func needCharts(t *testing.T) library {
 type tab struct {
 	t    *testing.T
 	ctx  context.Context
+	stop func()
 	url  string
 	mu   sync.Mutex
 	said []string // console messages, exceptions and entries of the browser's log
@@ -134,35 +137,85 @@ type view struct {
 
 var desktop = view{width: 1280, height: 720}
 
-// open writes the page of a plan to a file and loads it.
+// open writes the page of a plan to a file and loads it, for one test.
 func open(t *testing.T, p *plan.Plan, lib library, v view) *tab {
+	t.Helper()
+	b := load(t, browser.ctx, t.TempDir(), p, lib, v)
+	t.Cleanup(b.stop)
+	return b
+}
+
+// pages are those of the sample and of the demo with charts, opened once for
+// all tests that leave them as they found them.
+var pages = map[string]*tab{}
+
+func sampleTab(t *testing.T) *tab { return sharedTab(t, "sample", samplePlan) }
+
+func demoTab(t *testing.T) *tab {
+	return sharedTab(t, "demo", func() *plan.Plan { return demoPlan(t) })
+}
+
+// sharedTab returns a page that was opened before, as it was then: on a desk,
+// light, with everything folded.
+func sharedTab(t *testing.T, name string, of func() *plan.Plan) *tab {
+	t.Helper()
+	lib := needCharts(t)
+	b := pages[name]
+	if b == nil {
+		dir := filepath.Join(browser.dir, name)
+		if err := os.MkdirAll(dir, 0o755); err != nil {
+			t.Fatal(err)
+		}
+		b = load(t, browser.ctx, dir, of(), lib, desktop)
+		pages[name] = b
+	}
+	b.t = t
+	b.do(chromedp.EmulateViewport(desktop.width, desktop.height))
+	b.colours(false, "")
+	ask[bool](b, `document.querySelectorAll("details").forEach(d => { d.open = false }), scrollTo(0, 0), true`)
+	b.settle()
+	return b
+}
+
+func load(t *testing.T, in context.Context, dir string, p *plan.Plan, lib library, v view) *tab {
 	t.Helper()
 	var page bytes.Buffer
 	if err := writePage(&page, p, lib); err != nil {
 		t.Fatal(err)
 	}
-	file := filepath.Join(t.TempDir(), "report.html")
+	file := filepath.Join(dir, "report.html")
 	if err := os.WriteFile(file, page.Bytes(), 0o644); err != nil {
 		t.Fatal(err)
 	}
 	b := &tab{t: t, url: (&url.URL{Scheme: "file", Path: file}).String()}
-	ctx, cancel := chromedp.NewContext(browser.ctx, chromedp.WithListener(b.listen))
-	ctx, cancelTime := context.WithTimeout(ctx, time.Minute)
-	t.Cleanup(func() { cancelTime(); cancel() })
-	b.ctx = ctx
-	scheme := "light"
-	if v.dark {
-		scheme = "dark"
-	}
+	ctx, cancel := chromedp.NewContext(in, chromedp.WithListener(b.listen))
+	ctx, cancelTime := context.WithTimeout(ctx, 3*time.Minute)
+	b.ctx, b.stop = ctx, func() { cancelTime(); cancel() }
 	b.do(chromedp.EmulateViewport(v.width, v.height))
 	must(chromedp.Call(ctx, network.Enable, network.EnableParams{}))(t)
-	must(chromedp.Call(ctx, emulation.SetEmulatedMedia, emulation.SetEmulatedMediaParams{
-		Features: []*emulation.MediaFeature{{Name: "prefers-color-scheme", Value: scheme}},
-	}))(t)
+	b.colours(v.dark, "")
 	b.do(chromedp.Navigate(b.url))
-	// Two frames later the charts have been laid out and drawn.
-	ask[bool](b, `new Promise(done => requestAnimationFrame(() => requestAnimationFrame(() => done(true))))`)
+	b.settle()
 	return b
+}
+
+// colours sets the scheme that the reader prefers, and the medium.
+func (b *tab) colours(dark bool, medium string) {
+	b.t.Helper()
+	scheme := "light"
+	if dark {
+		scheme = "dark"
+	}
+	must(chromedp.Call(b.ctx, emulation.SetEmulatedMedia, emulation.SetEmulatedMediaParams{
+		Media:    medium,
+		Features: []*emulation.MediaFeature{{Name: "prefers-color-scheme", Value: scheme}},
+	}))(b.t)
+}
+
+// settle waits two frames: then the charts have been laid out and drawn.
+func (b *tab) settle() {
+	b.t.Helper()
+	ask[bool](b, `new Promise(done => requestAnimationFrame(() => requestAnimationFrame(() => done(true))))`)
 }
 
 // must returns a check of a command's error.

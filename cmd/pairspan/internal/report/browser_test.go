@@ -1,32 +1,55 @@
 package report
 
 import (
-	"bytes"
+	"encoding/json"
 	"fmt"
+	"slices"
 	"strings"
 	"testing"
 
-	"github.com/chromedp/cdproto/emulation"
 	"github.com/chromedp/chromedp"
+
+	"pairspan/scenarios/plan"
 )
 
-// strokes counts the drawn lines of a chart: paths without a fill, longer than
-// an axis's or a grid's single segment.
+// strokes lists the drawn lines of a chart by their number of points: paths
+// without a fill, longer than an axis or a grid line.
 const strokes = `[...document.querySelectorAll("#figure-%s .chart svg path[fill=none], #figure-%s .chart svg polyline")]
-	.filter(p => (p.getAttribute("d") || p.getAttribute("points") || "").length > 200).length`
+	.filter(p => (p.getAttribute("d") || p.getAttribute("points") || "").length > 200)
+	.map(p => (p.getAttribute("d") || p.getAttribute("points")).match(/-?[\d.]+(e-?\d+)?[ ,]+-?[\d.]+(e-?\d+)?/g).length).sort((a, b) => a - b)`
+
+func drawnLines(b *tab, id string) []int {
+	b.t.Helper()
+	return ask[[]int](b, fmt.Sprintf(strokes, id, id))
+}
+
+// pointsOf counts what each line of a figure should draw, fewest first.
+func pointsOf(t *testing.T, f *figure) []int {
+	t.Helper()
+	var counts []int
+	for _, s := range optionOf(t, f).Option.Series {
+		n := 0
+		for _, raw := range s.Data {
+			var item struct{ Value [2]*float64 }
+			if s.Type == "line" && json.Unmarshal(raw, &item) == nil && item.Value[1] != nil {
+				n++
+			}
+		}
+		if n > 0 {
+			counts = append(counts, n)
+		}
+	}
+	slices.Sort(counts)
+	return counts
+}
 
 func TestBrowserDrawsCharts(t *testing.T) {
-	lib := needCharts(t)
+	b := sampleTab(t)
 	p := samplePlan()
-	b := open(t, p, lib, desktop)
-	for id, want := range map[string]int{
-		// at worst, nominal, asymptotic and sifted as filed, and five compared cases
-		"rate": 4 + 5,
-		// two bases of the nominal state, which are one at worst
-		"qber": 3,
-	} {
-		if got := ask[int](b, fmt.Sprintf(strokes, id, id)); got != want {
-			t.Errorf("figure %s has %d lines, want %d", id, got, want)
+	for id, want := range map[string][]int{"rate": pointsOf(t, rateFigure(p)), "qber": pointsOf(t, qberFigure(p))} {
+		got := drawnLines(b, id)
+		if !slices.Equal(got, want) {
+			t.Errorf("figure %s draws lines of %v points, want %v", id, got, want)
 		}
 	}
 	// The widest run of the band covers all of the curve: to-and-fro over 241 points.
@@ -35,15 +58,19 @@ func TestBrowserDrawsCharts(t *testing.T) {
 	if points < 200 {
 		t.Errorf("the band has %d points", points)
 	}
-	text := ask[string](b, `document.querySelector("#figure-rate .chart").textContent`)
-	for _, want := range []string{"need 256\u00a0bit/s", "installed 6.2\u00a0km", "key ends", "10\u00a0000", "Bob’s fibre, km"} {
-		if !strings.Contains(text, want) {
-			t.Errorf("the rate chart lacks %q: %s", want, text)
+	for id, texts := range map[string][]string{
+		"rate": {
+			"need 256_bit/s", "installed 6.2_km", "10_000", "Bob’s fibre, km", "16_dB",
+			"1 as filed, at worst", "2 nominal", "3 secret", "4 sifted", "5 nanowire-at-alice", "9 arms.bob.length_km=12…",
+		},
+		"qber": {"no key above 9.8_% in both (f_=_1.16)", "installed 6.2_km", "1 key, nominal", "2 check, nominal", "3 both, at worst"},
+	} {
+		text := ask[string](b, `document.querySelector("#figure-`+id+` .chart").textContent`)
+		for _, want := range texts {
+			if want = strings.ReplaceAll(want, "_", nbsp); !strings.Contains(strings.ReplaceAll(text, "_", nbsp), want) {
+				t.Errorf("chart %s lacks %q: %s", id, want, text)
+			}
 		}
-	}
-	text = ask[string](b, `document.querySelector("#figure-qber .chart").textContent`)
-	if want := "no key above 9.8\u00a0% in both (f\u00a0=\u00a01.16)"; !strings.Contains(text, want) {
-		t.Errorf("the error chart lacks %q: %s", want, text)
 	}
 	b.quiet()
 }
@@ -51,16 +78,16 @@ func TestBrowserDrawsCharts(t *testing.T) {
 // A mark stands where each key ends: as filed and in the compared cases whose
 // curve reaches a zero.
 func TestBrowserMarksTheEndOfTheKey(t *testing.T) {
-	lib := needCharts(t)
-	p := samplePlan()
+	b := sampleTab(t)
 	want := 0
-	for i := range p.Cases {
-		want += len(ends(pick(p.Cases[i].Curve, judged)))
+	for _, s := range rateFigure(samplePlan()).Series {
+		if s.Ends {
+			want += len(ends(s.Y))
+		}
 	}
 	if want < 2 {
 		t.Fatalf("the sample has %d ends", want)
 	}
-	b := open(t, p, lib, desktop)
 	// The cross is the only closed outline of twelve corners.
 	got := ask[int](b, `[...document.querySelectorAll("#figure-rate .chart svg path")].filter(p => ((p.getAttribute("d") || "").match(/L/g) || []).length === 11 && /Z\s*$/.test(p.getAttribute("d"))).length`)
 	if got != want {
@@ -69,17 +96,52 @@ func TestBrowserMarksTheEndOfTheKey(t *testing.T) {
 	b.quiet()
 }
 
+// Names at the ends of lines keep apart from one another and inside the chart.
+func TestBrowserNamesAtTheEndsAreApart(t *testing.T) {
+	b := demoTab(t)
+	for _, width := range []int64{1280, 360} {
+		b.do(chromedp.EmulateViewport(width, 800))
+		b.until(fmt.Sprintf(`document.querySelector("#figure-rate .chart svg").getAttribute("width") < %d`, width))
+		b.settle()
+		boxes := ask[[][]float64](b, `(() => {
+			const chart = document.querySelector("#figure-rate .chart").getBoundingClientRect();
+			return [...document.querySelectorAll("#figure-rate .chart svg text")].map(t => [t, t.getBoundingClientRect()])
+				.filter(([t, r]) => r.left > chart.left + 0.55 * chart.width && /^\d+( |$)/.test(t.textContent) && r.top > chart.top + 70 && r.bottom < chart.bottom - 25 && t.getAttribute("stroke"))
+				.map(([, r]) => [r.left, r.top, r.right, r.bottom, chart.right]);
+		})()`)
+		if want := len(rateFigure(demoPlan(t)).Series) - 1; len(boxes) < want-2 || len(boxes) > want {
+			t.Errorf("at %d: %d names found for %d lines", width, len(boxes), want)
+		}
+		for i, a := range boxes {
+			if a[2] > a[4]+1 {
+				t.Errorf("at %d: a name ends at %g, the chart at %g", width, a[2], a[4])
+			}
+			for _, z := range boxes[i+1:] {
+				const touch = 3 // boxes of type are a little higher than its letters
+				if a[0] < z[2] && z[0] < a[2] && a[1] < z[3]-touch && z[1] < a[3]-touch {
+					t.Errorf("at %d: names at %v and %v overlap", width, a, z)
+				}
+			}
+		}
+	}
+	b.quiet()
+}
+
 func TestBrowserLegendHidesALine(t *testing.T) {
-	lib := needCharts(t)
-	b := open(t, samplePlan(), lib, desktop)
-	count := fmt.Sprintf(strokes, "rate", "rate")
-	click := `document.querySelector("#figure-rate button[data-series=short-window]").click(),
-		new Promise(done => requestAnimationFrame(() => requestAnimationFrame(() => done(` + count + `))))`
-	before := ask[int](b, count)
-	if after := ask[int](b, click); after != before-1 {
+	b := sampleTab(t)
+	click := func() int {
+		ask[bool](b, `document.querySelector("#figure-rate button[data-series=short-window]").click(), true`)
+		b.settle()
+		return len(drawnLines(b, "rate"))
+	}
+	before := len(drawnLines(b, "rate"))
+	if after := click(); after != before-1 {
 		t.Errorf("%d lines after hiding one of %d", after, before)
 	}
-	if after := ask[int](b, click); after != before {
+	if named := ask[bool](b, `document.querySelector("#figure-rate .chart").textContent.includes("8 short-window")`); named {
+		t.Error("the hidden line keeps its name")
+	}
+	if after := click(); after != before {
 		t.Errorf("%d lines after showing it again, want %d", after, before)
 	}
 	b.quiet()
@@ -88,7 +150,7 @@ func TestBrowserLegendHidesALine(t *testing.T) {
 func TestBrowserTooltipHasUnits(t *testing.T) {
 	lib := needCharts(t)
 	b := open(t, hostilePlan(), lib, view{width: 1280, height: 2400})
-	box := ask[[]float64](b, `(r => [r.left + 0.3 * r.width, r.top + 0.5 * r.height])(document.querySelector("#figure-rate .chart").getBoundingClientRect())`)
+	box := ask[[]float64](b, `(r => [r.left + 0.3 * r.width, r.top + 0.5 * r.height])((document.querySelector("#figure-rate .chart").scrollIntoView(), document.querySelector("#figure-rate .chart").getBoundingClientRect()))`)
 	b.do(chromedp.MouseEvent("mouseMoved", box[0], box[1]))
 	b.until(`document.querySelector("#figure-rate .tip")?.textContent`)
 	text := ask[string](b, `document.querySelector("#figure-rate .tip")?.textContent ?? ""`)
@@ -100,8 +162,8 @@ func TestBrowserTooltipHasUnits(t *testing.T) {
 	b.quiet()
 }
 
-// Nothing from a file may run: not in the page, not in a chart, not on the way
-// from one to the other.
+// Nothing from a file may run: not in the page, not in a chart or a drawing,
+// not on the way from one to the other.
 func TestBrowserShowsHostileTextAsText(t *testing.T) {
 	lib := needCharts(t)
 	b := open(t, hostilePlan(), lib, desktop)
@@ -112,14 +174,14 @@ func TestBrowserShowsHostileTextAsText(t *testing.T) {
 		t.Errorf("the title reads %q", got)
 	}
 	shown := ask[int](b, `document.body.textContent.split("<img src=x onerror").length - 1`)
-	if shown < 40 {
+	if shown < 50 {
 		t.Errorf("hostile text is shown %d times only", shown)
 	}
-	if n := ask[int](b, `document.images.length + document.scripts.length`); n != 4 {
-		t.Errorf("%d images and scripts, want two blocks of data and two scripts", n)
+	if n := ask[int](b, `document.images.length + document.scripts.length`); n != 5 {
+		t.Errorf("%d images and scripts, want two blocks of data and three scripts", n)
 	}
-	for id, want := range map[string]int{"rate": 9, "qber": 3} {
-		if got := ask[int](b, fmt.Sprintf(strokes, id, id)); got != want {
+	for id, f := range map[string]*figure{"rate": rateFigure(hostilePlan()), "qber": qberFigure(hostilePlan())} {
+		if got, want := len(drawnLines(b, id)), len(pointsOf(t, f)); got != want {
 			t.Errorf("figure %s has %d lines, want %d", id, got, want)
 		}
 	}
@@ -142,82 +204,17 @@ func TestBrowserPolicyStopsForeignScript(t *testing.T) {
 	}
 }
 
-func TestBrowserNoSidewaysScrolling(t *testing.T) {
-	needBrowser(t)
-	for name, p := range samplePlans() {
-		lib := library{}
-		if name == "sample" || name == "hostile" {
-			lib = charting() // with charts where they are compiled in
-		}
-		b := open(t, p, lib, view{width: 1280, height: 800})
-		ask[bool](b, `document.querySelectorAll("details").forEach(d => { d.open = true }), true`)
-		for _, width := range []int64{1280, 720, 360} {
-			b.do(chromedp.EmulateViewport(width, 800))
-			got := ask[int64](b, `new Promise(done => setTimeout(() => done(document.documentElement.scrollWidth), 150))`)
-			if got <= width {
-				continue
-			}
-			wide := ask[string](b, fmt.Sprintf(`[...document.querySelectorAll("body *")].filter(e => !e.closest(".frame *, pre, .chart *") && e.getBoundingClientRect().right > %d).map(e => e.tagName + "." + e.className).slice(0, 5).join(" ")`, width))
-			t.Errorf("%s is %d wide at %d: %s", name, got, width, wide)
-		}
-		b.quiet()
-	}
-}
-
-func TestBrowserDarkMode(t *testing.T) {
-	lib := needCharts(t)
-	colours := func(b *tab) (paper, line string) {
-		paper = ask[string](b, `getComputedStyle(document.body).backgroundColor`)
-		line = ask[string](b, `document.querySelector("#figure-rate .chart svg path[fill=none][stroke-width='2.6'], #figure-rate .chart svg polyline[stroke-width='2.6']").getAttribute("stroke")`)
-		return paper, line
-	}
-	light := open(t, samplePlan(), lib, desktop)
-	dark := open(t, samplePlan(), lib, view{width: 1280, height: 720, dark: true})
-	lightPaper, lightLine := colours(light)
-	darkPaper, darkLine := colours(dark)
-	if lightPaper == darkPaper || lightLine == darkLine {
-		t.Errorf("paper %s and %s, line %s and %s", lightPaper, darkPaper, lightLine, darkLine)
-	}
-	// A reader who changes the system's colours sees the open page follow.
-	must(chromedp.Call(light.ctx, emulation.SetEmulatedMedia, emulation.SetEmulatedMediaParams{
-		Features: []*emulation.MediaFeature{{Name: "prefers-color-scheme", Value: "dark"}},
-	}))(t)
-	light.until(fmt.Sprintf(`document.querySelector("#figure-rate .chart svg [stroke='%s']")`, darkLine))
-	if _, line := colours(light); line != darkLine {
-		t.Errorf("the line stays %s in a page turned dark, want %s", line, darkLine)
-	}
-	light.quiet()
-	dark.quiet()
-}
-
-func TestBrowserPrintsLight(t *testing.T) {
-	lib := needCharts(t)
-	b := open(t, samplePlan(), lib, view{width: 360, height: 800, dark: true})
-	pdf, err := chromedp.Run(b.ctx, chromedp.PrintToPDF(chromedp.PDFPreferCSSPageSize()))
-	if err != nil {
-		t.Fatal(err)
-	}
-	if !bytes.HasPrefix(pdf, []byte("%PDF-")) || len(pdf) < 10_000 {
-		t.Errorf("a PDF of %d bytes", len(pdf))
-	}
-	state := ask[string](b, `(dispatchEvent(new Event("beforeprint")), (() => {
-		const s = document.querySelector("#figure-rate .chart svg");
-		const seen = [getComputedStyle(document.documentElement).getPropertyValue("--paper"), s.getAttribute("width")].join(" ");
-		dispatchEvent(new Event("afterprint"));
-		return seen + " " + (document.querySelector("#figure-rate .chart svg").getAttribute("width") < 360);
-	})())`)
-	if state != "#fcfbf8 670 true" {
-		t.Errorf("paper, width on paper and width restored: %s", state)
-	}
-	b.quiet()
-}
-
+// A program built without the library writes tables in place of charts; what
+// it draws itself stays, and can be saved.
 func TestBrowserWithoutCharts(t *testing.T) {
 	needBrowser(t)
-	for name, p := range samplePlans() {
-		b := open(t, p, library{}, desktop)
-		if n := ask[int](b, `document.scripts.length`); n != 0 {
+	for _, name := range []string{"sample", "zero", "unknown"} {
+		b := open(t, samplePlans()[name], library{}, desktop)
+		if n := ask[int](b, `document.scripts.length`); n != 1 {
 			t.Errorf("%s: %d scripts without the library", name, n)
+		}
+		if n := ask[int](b, `document.querySelectorAll("figure > .save").length`); n < 1 {
+			t.Errorf("%s: no drawing can be saved", name)
 		}
 		if name == "sample" {
 			if n := ask[int](b, `document.querySelectorAll("#rate-data tbody tr").length`); n != 241 {
@@ -231,10 +228,7 @@ func TestBrowserWithoutCharts(t *testing.T) {
 // Charts of the other samples draw without a complaint, whatever is missing.
 func TestBrowserOtherSamples(t *testing.T) {
 	lib := needCharts(t)
-	for name, p := range samplePlans() {
-		if name == "sample" || name == "hostile" {
-			continue // drawn in the tests above
-		}
+	for name, p := range map[string]*plan.Plan{"known": knownPlan(), "unknown": unknownPlan(), "zero": zeroPlan(), "bare": barePlan()} {
 		b := open(t, p, lib, desktop)
 		boxes := ask[int](b, `document.querySelectorAll(".chart").length`)
 		if drawn := ask[int](b, `document.querySelectorAll(".chart svg").length`); drawn != boxes {

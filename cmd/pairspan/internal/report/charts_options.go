@@ -20,7 +20,45 @@ const cross = "path://M1 0L5 4L9 0L10 1L6 5L10 9L9 10L5 6L1 10L0 9L4 5L0 1Z"
 type chartData struct {
 	X      string         `json:"x"` // format of the horizontal axis
 	Y      string         `json:"y"`
+	Ends   []lineEnd      `json:"ends"` // what stands at the end of each series
+	Loss   lossScale      `json:"loss"`
 	Option map[string]any `json:"option"`
+}
+
+// lineEnd names a line at its end: by its number alone where there is little
+// room. A band has neither.
+type lineEnd struct {
+	Number string `json:"number"`
+	Text   string `json:"text"`
+}
+
+// lossScale is the second horizontal axis: labels at distances.
+type lossScale struct {
+	At     []float64 `json:"at"`
+	Labels []string  `json:"labels"`
+}
+
+// mostNamed is the number of lines up to which names stand at the ends.
+const mostNamed = 16
+
+func (f *figure) lineEnds() []lineEnd {
+	ends := make([]lineEnd, len(f.Series))
+	numbers := f.numbers()
+	for i, s := range f.Series {
+		ends[i] = lineEnd{Number: numbers[i]}
+		if len(f.Series) <= mostNamed && s.Short != "" {
+			ends[i].Text = ends[i].Number + " " + s.Short
+		}
+	}
+	return ends
+}
+
+func (f *figure) lossScale() lossScale {
+	l := lossScale{At: []float64{}, Labels: []string{}}
+	for _, t := range f.Loss {
+		l.At, l.Labels = append(l.At, roundTo(t.At, 6)), append(l.Labels, t.Label+nbsp+"dB")
+	}
+	return l
 }
 
 // option builds the chart's options as JSON for a data block. The library that
@@ -31,8 +69,8 @@ func (f *figure) option() template.JS {
 		charts.WithAnimation(false),
 		charts.WithLegendOpts(opts.Legend{Show: opts.Bool(false), Data: f.names()}),
 		charts.WithTooltipOpts(opts.Tooltip{Trigger: "axis", AxisPointer: &opts.AxisPointer{Type: "line"}}),
-		charts.WithGridOpts(opts.Grid{Left: "8", Right: "20", Top: "28", Bottom: "28", ContainLabel: opts.Bool(true)}),
-		charts.WithXAxisOpts(f.xAxis()),
+		charts.WithGridOpts(opts.Grid{Left: "8", Right: "20", Top: "56", Bottom: "28", ContainLabel: opts.Bool(true)}),
+		charts.WithXAxisOpts(f.Over.axis(f.xAxis())),
 		charts.WithYAxisOpts(f.yAxis()),
 	)
 	at := f.drawnPoints()
@@ -45,7 +83,7 @@ func (f *figure) option() template.JS {
 	for _, unused := range []string{"title", "toolbox", "color"} {
 		delete(option, unused)
 	}
-	js, err := json.Marshal(chartData{X: "km", Y: f.YKind, Option: option})
+	js, err := json.Marshal(chartData{X: f.Over.format(), Y: f.YKind, Ends: f.lineEnds(), Loss: f.lossScale(), Option: option})
 	if err != nil {
 		// Only a figure that is not finite can fail here, and a plan has none;
 		// the table under the chart stands in either case.
@@ -161,9 +199,6 @@ func (f *figure) endMarks(s series) *opts.MarkPoints {
 			Coordinate: []any{roundTo(f.Km[k], 6), roundTo(max(*s.Y[k], f.YMin), 6)},
 			Label:      &opts.Label{Show: opts.Bool(false)},
 		}
-		if s.Look.Colour == 0 {
-			m.Label = &opts.Label{Show: opts.Bool(true), Formatter: "{b}", Position: "left", Color: "--ink"}
-		}
 		marks.Data = append(marks.Data, m)
 	}
 	if len(marks.Data) == 0 {
@@ -183,13 +218,27 @@ func (f *figure) towardsMiddle(at float64) string {
 	return "center"
 }
 
+// aboveLoss lifts the label of a post over the scale of the loss.
+func (f *figure) aboveLoss() float64 {
+	if len(f.Loss) > 0 {
+		return 24
+	}
+	return 5
+}
+
 // emptierEnd is where the label of a level is least in the way: rates fall with
 // distance, error rates rise.
 func (f *figure) emptierEnd() string {
-	if f.Log {
+	if f.Log || f.YKind == "number" {
 		return "insideEndTop"
 	}
 	return "insideStartTop"
+}
+
+// straightLabel is a label with its distance from the line, in pixels.
+type straightLabel struct {
+	opts.Label
+	Distance float64 `json:"distance"`
 }
 
 // straightLines carries the need or the threshold and the installed distance;
@@ -200,24 +249,24 @@ func (f *figure) straightLines() charts.SingleSeries {
 		XAxis     *float64        `json:"xAxis,omitempty"`
 		YAxis     *float64        `json:"yAxis,omitempty"`
 		LineStyle *opts.LineStyle `json:"lineStyle"`
-		Label     *opts.Label     `json:"label"`
+		Label     straightLabel   `json:"label"`
 	}
 	lines := &opts.MarkLines{MarkLineStyle: opts.MarkLineStyle{Symbol: []string{"none", "none"}}}
-	add := func(l level, x, y *float64, dash string, label opts.Label) {
+	add := func(l level, x, y *float64, dash string, label opts.Label, distance float64) {
 		label.Show, label.Formatter, label.Color = opts.Bool(true), "{b}", "--ink"
 		lines.Data = append(lines.Data, straight{
 			Name: l.Label, XAxis: x, YAxis: y,
 			LineStyle: &opts.LineStyle{Color: "--ink-soft", Type: dash, Width: 1.4},
-			Label:     &label,
+			Label:     straightLabel{label, distance},
 		})
 	}
 	for _, l := range f.Levels {
 		at := roundTo(l.At, 6)
-		add(l, nil, &at, "longdash", opts.Label{Position: f.emptierEnd()})
+		add(l, nil, &at, "longdash", opts.Label{Position: f.emptierEnd()}, 4)
 	}
 	for _, l := range f.Posts {
 		at := roundTo(l.At, 6)
-		add(l, &at, nil, "solid", opts.Label{Position: "end", Align: f.towardsMiddle(l.At)})
+		add(l, &at, nil, "solid", opts.Label{Position: "end", Align: f.towardsMiddle(l.At)}, f.aboveLoss())
 	}
 	return charts.SingleSeries{Type: types.ChartLine, Data: []opts.LineData{}, MarkLines: lines}
 }

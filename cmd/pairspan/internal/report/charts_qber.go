@@ -19,6 +19,7 @@ func qberFigure(p *plan.Plan) *figure {
 		Series:  qberSeries(filed),
 	}
 	f.KmMax = farthest(f.Km, filed.Installed.DistanceKm)
+	f.Loss = lossTicks(filed.Curve, f.KmMax, lossLabels)
 	f.Posts = []level{{At: filed.Installed.DistanceKm, Label: "installed " + km(filed.Installed.DistanceKm)}}
 	if filed.QBERThreshold > 0 {
 		f.Levels = []level{{
@@ -40,7 +41,7 @@ func qberFigure(p *plan.Plan) *figure {
 func qberSeries(c *plan.Case) []series {
 	state := ""
 	if c.Installed.Bounds != nil {
-		state = ", nominal state"
+		state = ", nominal"
 	}
 	nominal := bases(c.Curve, state, func(p *plan.Point) *plan.QBER { return p.QBER })
 	worst := bases(c.Curve, ", at worst", func(p *plan.Point) *plan.QBER {
@@ -70,11 +71,11 @@ func bases(curve []plan.Point, state string, of func(*plan.Point) *plan.QBER) []
 	case empty(key):
 		return nil
 	case !apart:
-		return []series{{Name: "Both bases" + state, Y: key, Look: look{Colour: 0, Dash: "solid", Width: 2.6}}}
+		return []series{{Name: "Both bases" + state, Y: key, Look: look{Colour: 0, Dash: "solid", Width: 2.6}, Short: "both" + state}}
 	}
 	return []series{
-		{Name: "Key basis" + state, Y: key, Look: look{Colour: 0, Dash: "solid", Width: 2.6}},
-		{Name: "Check basis" + state, Y: check, Look: look{Colour: 1, Dash: "dashed", Width: 2.2}},
+		{Name: "Key basis" + state, Y: key, Look: look{Colour: 0, Dash: "solid", Width: 2.6}, Short: "key" + state},
+		{Name: "Check basis" + state, Y: check, Look: look{Colour: 1, Dash: "dashed", Width: 2.2}, Short: "check" + state},
 	}
 }
 

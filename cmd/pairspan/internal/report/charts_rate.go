@@ -24,6 +24,7 @@ func rateFigure(p *plan.Plan) *figure {
 	}
 	f.Posts = []level{{At: filed.Installed.DistanceKm, Label: "installed " + km(filed.Installed.DistanceKm)}}
 	f.KmMax = farthest(f.Km, filed.Installed.DistanceKm)
+	f.Loss = lossTicks(filed.Curve, f.KmMax, lossLabels)
 	f.dataTable("Rates at each distance", "bit/s", func(v float64) string { return digits(v, 4) })
 	switch {
 	case len(f.Series) == 0:
@@ -34,6 +35,9 @@ func rateFigure(p *plan.Plan) *figure {
 	}
 	return f
 }
+
+// lossLabels is how many labels the scale of the loss has at most.
+const lossLabels = 10
 
 // rateSeries lists the lines of the scenario as filed and one per compared case.
 func rateSeries(p *plan.Plan) []series {
@@ -48,22 +52,22 @@ func rateSeries(p *plan.Plan) []series {
 	secret := pick(filed.Curve, func(p *plan.Point) *float64 { return p.SecretRateBps })
 	worst, best := pick(filed.Curve, judged), pick(filed.Curve, usableAtBest)
 	if empty(best) {
-		add(series{Name: "As filed: usable rate", Y: usable, Look: look{Dash: "solid", Width: 2.6}, Ends: true})
+		add(series{Name: "As filed: usable rate", Y: usable, Look: look{Dash: "solid", Width: 2.6}, Ends: true, Short: "as filed"})
 	} else {
-		add(series{Name: "As filed: usable rate, at worst", Y: worst, Look: look{Dash: "solid", Width: 2.6}, Ends: true})
+		add(series{Name: "As filed: usable rate, at worst", Y: worst, Look: look{Dash: "solid", Width: 2.6}, Ends: true, Short: "as filed, at worst"})
 		add(series{Name: "As filed: usable rate, at best (upper edge of the band)", Y: best, Lo: worst})
-		add(series{Name: "As filed: usable rate, nominal state", Y: usable, Look: look{Dash: "dashed", Width: 1.4}})
+		add(series{Name: "As filed: usable rate, nominal state", Y: usable, Look: look{Dash: "dashed", Width: 1.4}, Ends: true, Short: "nominal"})
 	}
 	if !same(secret, usable) {
-		add(series{Name: "As filed: secret rate, asymptotic", Y: secret, Look: look{Dash: "dashdot", Width: 1.4}})
+		add(series{Name: "As filed: secret rate, asymptotic", Y: secret, Look: look{Dash: "dashdot", Width: 1.4}, Ends: true, Short: "secret"})
 	}
 	add(series{
 		Name: "As filed: sifted rate", Y: pick(filed.Curve, func(p *plan.Point) *float64 { return p.SiftedBps }),
-		Look: look{Dash: "dotted", Width: 1.8},
+		Look: look{Dash: "dotted", Width: 1.8}, Short: "sifted",
 	})
 	for i := range p.Cases[1:] {
 		c := &p.Cases[1+i]
-		add(series{Name: c.Name, Y: pick(c.Curve, judged), Look: comparedLook(i), Ends: true})
+		add(series{Name: c.Name, Y: pick(c.Curve, judged), Look: comparedLook(i), Ends: true, Short: c.Name})
 	}
 	return all
 }
@@ -129,7 +133,7 @@ func endFinding(c *plan.Case) string {
 
 func rateReading(p *plan.Plan) string {
 	filed := &p.Cases[0]
-	s := "Usable rate: " + judgedWords(filed.Answer) + "; it alone is judged. "
+	s := "Usable rate: " + judgedWords(filed.Answer) + "; it alone is judged. The upper scale is the optical loss of both arms together. "
 	if filed.Installed.Bounds != nil {
 		s += "The band spans every state that the stated figure leaves open. "
 	}

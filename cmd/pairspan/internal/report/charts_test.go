@@ -274,3 +274,19 @@ func TestComparedCasesStandByMargin(t *testing.T) {
 		t.Errorf("a case without an answer stands before %s", rows[len(rows)-1].Head)
 	}
 }
+
+// A band has no number; names give way to numbers where lines are many.
+func TestLineEnds(t *testing.T) {
+	p := samplePlan()
+	ends := rateFigure(p).lineEnds()
+	if ends[0].Text != "1 as filed, at worst" || ends[1].Number != "" || ends[2].Number != "2" {
+		t.Errorf("ends %+v", ends[:3])
+	}
+	for range 10 {
+		p.Cases = append(p.Cases, p.Cases[1])
+	}
+	ends = rateFigure(p).lineEnds()
+	if last := ends[len(ends)-1]; last.Text != "" || last.Number != itoa(len(ends)-1) {
+		t.Errorf("the last of %d lines ends in %+v", len(ends), last)
+	}
+}

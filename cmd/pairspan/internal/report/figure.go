@@ -19,8 +19,9 @@ type figure struct {
 	KmName string    // what the distance is
 	Km     []float64 // common distances of all series
 	KmMax  float64
+	Over   *otherAxis // nil: distance
 	YName  string
-	YKind  string // "rate" or "percent": the formats of the boot script
+	YKind  string // "rate", "percent" or "number": the formats of the boot script
 	Log    bool
 	YMin   float64
 	YMax   float64
@@ -28,10 +29,20 @@ type figure struct {
 	Levels []level // horizontal lines
 	Posts  []level // vertical lines
 
+	Loss []tick // the second scale: distances at which the total loss is round
+
 	Data     table
-	DataNote string      // where the table holds a selection
-	Option   template.JS // for the boot script; empty without the library
+	DataNote string          // where the table holds a selection
+	Tables   []table         // the data of a drawing that needs several
+	Drawings []template.HTML // drawn by the program itself, one for each width
+	Option   template.JS     // for the script of the charts; empty without the library
 }
+
+// Drawn reports whether the figure is drawn without the library.
+func (f *figure) Drawn() bool { return len(f.Drawings) > 0 }
+
+// HasData reports whether tables stand behind the figure.
+func (f *figure) HasData() bool { return len(f.Data.Rows) > 0 || len(f.Tables) > 0 }
 
 // level is a straight line at one value of an axis.
 type level struct {
@@ -156,16 +167,31 @@ func decade(y float64, round func(float64) float64) float64 {
 // number puts the chart on the page as the n-th figure.
 func (f *figure) number(n int, lib library) {
 	f.Number = n
-	if f.Nothing == "" && lib.Script != "" {
+	if f.Nothing == "" && len(f.Series) > 0 && lib.Script != "" {
 		f.Option = f.option()
 	}
+}
+
+// numbers counts the lines; the number of a line stands in the legend and at
+// its end. A band has an edge that is drawn as a line of its own, and none.
+func (f *figure) numbers() []string {
+	out := make([]string, len(f.Series))
+	n := 0
+	for i, s := range f.Series {
+		if s.Lo == nil {
+			n++
+			out[i] = itoa(n)
+		}
+	}
+	return out
 }
 
 // Legend lists the series as the legend draws them.
 func (f *figure) Legend() []legendItem {
 	items := make([]legendItem, len(f.Series))
+	numbers := f.numbers()
 	for i, s := range f.Series {
-		items[i] = legendItem{Name: s.Name, Colour: "line-" + strconv.Itoa(s.Look.Colour), Band: s.Lo != nil, Symbol: s.Look.Symbol, Width: s.Look.Width}
+		items[i] = legendItem{Name: s.Name, Number: numbers[i], Colour: "line-" + strconv.Itoa(s.Look.Colour), Band: s.Lo != nil, Symbol: s.Look.Symbol, Width: s.Look.Width}
 		for _, d := range dashes {
 			if d.Name == s.Look.Dash {
 				items[i].Dash = d.Pattern
@@ -177,7 +203,7 @@ func (f *figure) Legend() []legendItem {
 
 // legendItem is one entry of the legend; Colour is a class of the style sheet.
 type legendItem struct {
-	Name, Colour, Dash, Symbol string
-	Width                      float32
-	Band                       bool
+	Name, Number, Colour, Dash, Symbol string
+	Width                              float32
+	Band                               bool
 }

@@ -17,7 +17,11 @@ var pageFiles embed.FS
 // pageTemplates parses the pieces of the page once; a fault in them is a fault
 // of the program, which the tests find.
 var pageTemplates = sync.OnceValue(func() *template.Template {
-	return template.Must(template.New("report").ParseFS(pageFiles, "page/*.html"))
+	return template.Must(template.New("report").Funcs(template.FuncMap{
+		"lower": lowerFirst,
+		"inc":   func(i int) int { return i + 1 },
+		"nbsp":  func() string { return nbsp },
+	}).ParseFS(pageFiles, "page/*.html"))
 })
 
 // HTML writes the report of a plan as one page that needs no other file and

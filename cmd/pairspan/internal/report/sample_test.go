@@ -84,6 +84,7 @@ func samplePlan() *plan.Plan {
 		PlanFormat: 1, Title: "Harbour campus, library to data hall", Program: plan.Program{Name: "pairspan", Version: "0.1.0"},
 		Inputs:       []plan.Input{{Name: "harbour.yaml", SHA256: strings.Repeat("0123456789abcdef", 4), Text: "title: Harbour campus\nneed: { secret_rate_bps: 256 }\n"}},
 		DefaultsUsed: []plan.Default{{Entry: "arms.bob.connector_pair_loss_db", Value: "0.3", Source: "common practice, no source"}, {Entry: "arms.alice.splices", Value: "0", Source: "none stated"}},
+		Entries:      sampleEntries(),
 		Deviations:   []plan.Deviation{{Entry: "source.state.tangle", Value: 0.86, SD: 0.02}},
 		Origins:      []plan.Origin{{Entry: "detectors.free_running.efficiency", Text: "calibrated with a power meter, 12 March"}},
 		Warnings: []plan.Warning{
@@ -105,6 +106,23 @@ func samplePlan() *plan.Plan {
 	p.Cases[3].Answer.MarginDB, p.Cases[3].Answer.MarginReason = nil, ptr("no_loss_helps")
 	p.Cases[3].Answer.ReachKm, p.Cases[3].Answer.ReachReason = nil, ptr("not_at_zero_km")
 	return p
+}
+
+// sampleEntries has an entry of each way to know it.
+func sampleEntries() []plan.Entry {
+	return []plan.Entry{
+		{Entry: "source.pair_rate_hz", Value: "2000000", Unit: "Hz", Meaning: "pairs made", KnownBy: ptr(plan.Unreferred)},
+		{Entry: "source.state.tangle", Value: "0.86", SD: ptr(0.02), Meaning: "the tangle", KnownBy: ptr(plan.Measured)},
+		{Entry: "arms.alice.fixed_loss_db", Value: "4.2", Unit: "dB", Meaning: "fixed loss", Origin: ptr("a guess"), KnownBy: ptr(plan.Assumed)},
+		{Entry: "arms.alice.detector", Value: "free_running", Meaning: "the detector"},
+		{Entry: "arms.bob.fixed_loss_db", Value: "4.2", Unit: "dB", Meaning: "fixed loss", KnownBy: ptr(plan.Unreferred)},
+		{Entry: "arms.bob.connector_pair_loss_db", Value: "0.3", Unit: "dB", Meaning: "loss of a pair", DefaultSource: ptr("common practice, no source"), KnownBy: ptr(plan.ByDefault)},
+		{Entry: "arms.bob.detector", Value: "free_running", Meaning: "the detector"},
+		{Entry: "detectors.free_running.efficiency", Value: "0.2", Meaning: "efficiency", Origin: ptr("calibrated with a power meter, 12 March"), KnownBy: ptr(plan.Measured)},
+		{Entry: "detectors.free_running.dead_time_ns", Value: "10000", Unit: "ns", Meaning: "dead time", Origin: ptr("data sheet"), KnownBy: ptr(plan.FromPaper)},
+		{Entry: "detectors.nanowire.dead_time_ns", Value: "50", Unit: "ns", Meaning: "dead time", KnownBy: ptr(plan.Unreferred)},
+		{Entry: "window_ps", Value: "auto", Unit: "ps", Meaning: "the window", DefaultSource: ptr("the planner searches it")},
+	}
 }
 
 // knownPlan has a given state, one case, no need and no lists.
@@ -180,6 +198,11 @@ func fill(p *plan.Plan, text string) *plan.Plan {
 	p.DefaultsUsed = []plan.Default{{Entry: text, Value: text, Source: text}}
 	p.Deviations = []plan.Deviation{{Entry: text, Value: 1, SD: 0.1}}
 	p.Origins = []plan.Origin{{Entry: text, Text: text}}
+	p.Withheld = []string{text}
+	p.Entries = []plan.Entry{
+		{Entry: "source." + text, Value: text, Unit: text, Meaning: text, Origin: ptr(text), KnownBy: ptr(plan.Measured)},
+		{Entry: "x" + text, Value: "1", Unit: text, Meaning: text, SD: ptr(0.1), DefaultSource: ptr(text), KnownBy: ptr("x" + text)},
+	}
 	p.Warnings = []plan.Warning{{Rule: text, Entry: text, Sentence: text}}
 	p.Cautions = []plan.Caution{{About: text, Sentence: text}}
 	p.References = []plan.Reference{{ID: text, Text: text}}

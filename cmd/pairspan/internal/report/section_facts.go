@@ -16,7 +16,7 @@ type facts struct {
 // state where the state is an interval.
 func answerFacts(c *plan.Case) facts {
 	a := c.Answer
-	t := table{ID: "facts", Caption: "The answer in figures", Quiet: true, Head: []string{"", "Judged"}}
+	t := table{ID: "facts", Caption: "The answer in figures", Quiet: true, Stack: true, Head: []string{"", "Judged"}}
 	if a.Nominal != nil || a.AtBest != nil {
 		t.Head = []string{"", "At worst, judged", "Nominal state", "At best"}
 	}
@@ -78,6 +78,9 @@ func factNotes(c *plan.Case) string {
 		s += "Margin: the extra loss from which the need is no longer met. "
 	default:
 		s += "Margin: the extra loss from which there is no key. "
+	}
+	if c.Answer.MarginDB != nil && *c.Answer.MarginDB >= 0 && c.Answer.ReachKm != nil {
+		s += "Fibre up to the reach costs a little less than the margin in dB where its dispersion costs key too. "
 	}
 	return s + "Distances: " + lengthenWords(c.Lengthen) + "."
 }

@@ -9,7 +9,7 @@ import (
 // installedTable follows the link as installed from pairs to usable key.
 func installedTable(c *plan.Case) table {
 	p := &c.Installed
-	t := table{ID: "installed", Caption: "From pairs to usable key", Quiet: true}
+	t := table{ID: "installed", Caption: "From pairs to usable key, in full", Quiet: true, Stack: true}
 	t.Head = []string{"", "Given state"}
 	if p.Bounds != nil {
 		t.Head = []string{"", "Nominal state", "At worst", "At best"}
@@ -63,24 +63,6 @@ func pairOfErrors(q *plan.QBER) string {
 		return none
 	}
 	return perCentBare(q.Key) + slash + perCent(q.Check)
-}
-
-// errorPartsTable says what the key basis's QBER is made of; nil without a state.
-func errorPartsTable(c *plan.Case) *table {
-	q := c.QBERParts
-	if q == nil {
-		return nil
-	}
-	t := &table{ID: "error-parts", Caption: "What the QBER of the key basis is made of", Head: []string{"Part", "QBER"}}
-	t.add("Pair state", perCent(q.State))
-	t.add("Alignment and PMD", perCent(q.Alignment))
-	t.add("Multiple pairs", perCent(q.MultiPair))
-	t.add("Detector noise", perCent(q.DetectorNoise))
-	t.add("Outside light", perCent(q.OutsideLight))
-	if c.Installed.QBER != nil {
-		t.Rows = append(t.Rows, row{Head: "All together", Cells: []string{perCent(c.Installed.QBER.Key)}, Main: true})
-	}
-	return t
 }
 
 // partsTable ranks the parts of the link by what an ideal one would bring.

@@ -14,6 +14,8 @@ type series struct {
 	Lo   []*float64 // lower edge of a band; nil slice: a line
 	Look look
 	Ends bool // on a logarithmic axis: mark where the last positive point is followed by a zero
+
+	Short string // what stands at the end of the line; "" for a band
 }
 
 // look is how a line is told from the others: never by its colour alone.

@@ -30,8 +30,11 @@ func SourceCSV(w io.Writer, r *source.Result) error {
 	return c.Error()
 }
 
+// SourcePage is the name of a source's page in its folder.
+const SourcePage = "source.html"
+
 // sourceFiles are what a folder about a source holds, the one to open last.
-var sourceFiles = []file[*source.Result]{{"source.json", SourceJSON}}
+var sourceFiles = []file[*source.Result]{{"source.json", SourceJSON}, {SourcePage, SourceHTML}}
 
 // SourceFolder writes what a source is into dir, as Folder does a plan, and
 // returns the name of the file to open.

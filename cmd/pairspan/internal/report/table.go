@@ -10,6 +10,7 @@ type table struct {
 	Words   []bool // columns after the first that hold words, not numbers
 	Stack   bool   // on a narrow screen each row becomes a block
 	Wide    bool   // may need sideways scrolling inside its own frame
+	Entries bool   // row headers are names of entries
 }
 
 // row is a row header and its cells; Cells[i] belongs to Head[i+1].

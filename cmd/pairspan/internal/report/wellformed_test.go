@@ -11,8 +11,8 @@ import (
 var voids = map[string]bool{"meta": true, "br": true, "link": true, "img": true, "input": true, "hr": true}
 
 var (
-	tagForm  = regexp.MustCompile(`^<(/?)([a-z][a-z0-9]*)((?:\s+[a-zA-Z-]+(?:="[^"<>]*")?)*)\s*(/?)>`)
-	attrForm = regexp.MustCompile(`\s+([a-zA-Z-]+)(?:="[^"]*")?`)
+	tagForm  = regexp.MustCompile(`^<(/?)([a-z][a-z0-9]*)((?:\s+[a-zA-Z][a-zA-Z0-9-]*(?:="[^"<>]*")?)*)\s*(/?)>`)
+	attrForm = regexp.MustCompile(`\s+([a-zA-Z][a-zA-Z0-9-]*)(?:="[^"]*")?`)
 )
 
 // wellFormed walks a page and returns the first place where its elements do

@@ -1,6 +1,7 @@
 package report
 
 import (
+	"strconv"
 	"strings"
 	"unicode"
 	"unicode/utf8"
@@ -113,5 +114,17 @@ func sentence(s string) string {
 	}
 	return s
 }
+
+// lowerFirst puts a heading inside a sentence; a name in capitals keeps them.
+func lowerFirst(s string) string {
+	first, size := utf8.DecodeRuneInString(s)
+	second, _ := utf8.DecodeRuneInString(s[size:])
+	if unicode.IsUpper(second) {
+		return s
+	}
+	return string(unicode.ToLower(first)) + s[size:]
+}
+
+func itoa(n int) string { return strconv.Itoa(n) }
 
 func spaced(s string) string { return strings.ReplaceAll(s, "_", " ") }
