@@ -133,7 +133,7 @@ func sentenceStart(s string) string { return strings.TrimSuffix(sentence(s), "."
 
 // correlationsTable is what the analysers should show of the state.
 func correlationsTable(a *plan.Acceptance) table {
-	t := table{ID: "correlations", Caption: "Correlations to expect at the ends", Head: []string{"Figure", "At worst", "Nominal", "At best"}}
+	t := table{ID: "correlations", Wide: true, Caption: "Correlations to expect at the ends", Head: []string{"Figure", "At worst", "Nominal", "At best"}}
 	if c := a.CHSH; c != nil {
 		t.add("CHSH value, above 2 where the pairs are entangled", digits(c.AtWorst, 4), digits(c.Nominal, 4), digits(c.AtBest, 4))
 		never := "never"

@@ -11,7 +11,7 @@ func needsTable(n *plan.Needs) *table {
 	if n.Connections != 1 {
 		of = " of each of " + grouped(n.Connections, 6) + " connections"
 	}
-	t := &table{ID: "needs", Caption: "The need in its three forms; stated as " + n.StatedAs, Head: []string{"Form", "Need"}}
+	t := &table{ID: "needs", Wide: true, Caption: "The need in its three forms; stated as " + n.StatedAs, Head: []string{"Form", "Need"}}
 	t.add("Secret key rate", grouped(n.SecretRateBps, 4)+nbsp+"bit/s")
 	t.add("A new AES-256 key"+of+" every", seconds(n.AES256RenewalS))
 	t.add("Key a day", grouped(n.KeyBitsPerDay, 4)+nbsp+"bit")
@@ -37,7 +37,7 @@ func blockRemark(c *plan.Case) *remark {
 		return nil
 	}
 	bits := func(v float64) string { return grouped(v, 4) + nbsp + "bit" }
-	t := table{ID: "block", Caption: "Key of finite blocks" + atWorst(c) + ", at the installed length", Head: []string{"Figure", "Value"}}
+	t := table{ID: "block", Wide: true, Caption: "Key of finite blocks" + atWorst(c) + ", at the installed length", Head: []string{"Figure", "Value"}}
 	t.add("Sifted bits of a block", bits(b.SiftedBits))
 	t.add("Secret bits of a block, before authentication", bits(b.SecretBits))
 	t.add("Spent on authentication, a block", bits(b.AuthenticationBits))

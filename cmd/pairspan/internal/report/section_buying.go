@@ -19,7 +19,7 @@ func buyingRemark(p *plan.Plan) *remark {
 	}
 	r.Tables = append(r.Tables, costsTable(b, p.Cases[0].Name))
 	if len(b.Overtakes) > 0 {
-		t := table{ID: "overtakes", Caption: "Where one case overtakes another, the nearest first", Head: []string{"Case", "Makes more than", "From, km"}, Words: []bool{true, false}}
+		t := table{ID: "overtakes", Wide: true, Caption: "Where one case overtakes another, the nearest first", Head: []string{"Case", "Makes more than", "From, km"}, Words: []bool{true, false}}
 		for _, o := range b.Overtakes {
 			t.add(filedName(o.Case, p), filedName(o.Overtakes, p), digits(o.DistanceKm, 3))
 		}

@@ -43,7 +43,7 @@ func elasticityFigure(c *plan.Case) *figure {
 		return nil
 	}
 	f := &figure{ID: "elasticities", Title: "What moves the rate"}
-	t := table{ID: "elasticities-data", Caption: "Elasticity of the usable rate" + atWorst(c), Head: []string{"Entry", "Change of the rate by 1" + nbsp + "% more of it, %"}}
+	t := table{ID: "elasticities-data", Wide: true, Caption: "Elasticity of the usable rate" + atWorst(c), Head: []string{"Entry", "Change of the rate by 1" + nbsp + "% more of it, %"}}
 	var bars []bar
 	for _, e := range c.Elasticities {
 		t.add(e.Entry, digits(e.Value, 3))

@@ -14,7 +14,7 @@ func doubtRemark(c *plan.Case) *remark {
 		return r
 	}
 	t := table{
-		ID: "quantiles", Caption: itoa(u.Draws) + " draws of every standard deviation stated, seed " + itoa(u.Seed),
+		ID: "quantiles", Wide: true, Caption: itoa(u.Draws) + " draws of every standard deviation stated, seed " + itoa(u.Seed),
 		Head: []string{"Figure", "5" + nbsp + "%", "50" + nbsp + "%", "95" + nbsp + "%"},
 	}
 	t.add("Usable rate"+atWorst(c), bitRate(u.UsableRate.P05), bitRate(u.UsableRate.P50), bitRate(u.UsableRate.P95))
@@ -75,7 +75,7 @@ func sharesFigure(u *plan.Uncertainty) *figure {
 		return nil
 	}
 	f := &figure{ID: "shares", Title: "Where the doubt comes from"}
-	t := table{ID: "shares-data", Caption: "Each input’s share of the variance of the usable rate", Head: []string{"Entry", "First order, %", "By the draws, %"}}
+	t := table{ID: "shares-data", Wide: true, Caption: "Each input’s share of the variance of the usable rate", Head: []string{"Entry", "First order, %", "By the draws, %"}}
 	var bars []bar
 	for _, s := range u.Shares {
 		t.add(s.Entry, digits(100*s.FirstOrder, 3), digits(100*s.ByDraws, 3))
