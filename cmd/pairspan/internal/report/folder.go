@@ -2,10 +2,12 @@ package report
 
 import (
 	"bytes"
+	"errors"
 	"fmt"
 	"io"
 	"os"
 	"path/filepath"
+	"sync"
 
 	"pairspan/scenarios/plan"
 )
@@ -37,6 +39,16 @@ func writeFolder[T any](dir string, files []file[T], of T) (err error) {
 	if err := os.MkdirAll(dir, 0o755); err != nil {
 		return err
 	}
+	for _, f := range files {
+		// What cannot be replaced is found before anything is.
+		if info, err := os.Stat(filepath.Join(dir, f.name)); err == nil && info.IsDir() {
+			return fmt.Errorf("%s: a folder stands where the file belongs", filepath.Join(dir, f.name))
+		}
+	}
+	texts, err := writeAll(files, of)
+	if err != nil {
+		return err
+	}
 	var written []string
 	defer func() {
 		if err != nil {
@@ -45,18 +57,10 @@ func writeFolder[T any](dir string, files []file[T], of T) (err error) {
 			}
 		}
 	}()
-	for _, f := range files {
-		// What cannot be replaced is found before anything is.
-		if info, err := os.Stat(filepath.Join(dir, f.name)); err == nil && info.IsDir() {
-			return fmt.Errorf("%s: a folder stands where the file belongs", filepath.Join(dir, f.name))
-		}
-		var b bytes.Buffer
-		if err := f.write(&b, of); err != nil {
-			return fmt.Errorf("%s: %w", f.name, err)
-		}
+	for i, f := range files {
 		beside := filepath.Join(dir, "."+f.name+".part")
 		written = append(written, beside)
-		if err := os.WriteFile(beside, b.Bytes(), 0o644); err != nil {
+		if err := os.WriteFile(beside, texts[i].Bytes(), 0o644); err != nil {
 			return err
 		}
 	}
@@ -66,4 +70,19 @@ func writeFolder[T any](dir string, files []file[T], of T) (err error) {
 		}
 	}
 	return nil
+}
+
+// writeAll writes the files in memory, side by side: none depends on another.
+func writeAll[T any](files []file[T], of T) ([]bytes.Buffer, error) {
+	texts, errs := make([]bytes.Buffer, len(files)), make([]error, len(files))
+	var wait sync.WaitGroup
+	for i, f := range files {
+		wait.Go(func() {
+			if err := f.write(&texts[i], of); err != nil {
+				errs[i] = fmt.Errorf("%s: %w", f.name, err)
+			}
+		})
+	}
+	wait.Wait()
+	return texts, errors.Join(errs...)
 }
