@@ -7,7 +7,6 @@ import (
 	"path/filepath"
 	"strings"
 	"testing"
-	"time"
 	"unicode/utf8"
 
 	"pairspan/sources"
@@ -64,23 +63,7 @@ func TestSourceInterrupt(t *testing.T) {
 	if err := os.WriteFile(file, []byte(manySettings()), 0o600); err != nil {
 		t.Fatal(err)
 	}
-	cmd := program(t, "source", file, "--out", out)
-	var said strings.Builder
-	cmd.Stderr = &said
-	if err := cmd.Start(); err != nil {
-		t.Fatal(err)
-	}
-	time.Sleep(300 * time.Millisecond) // it takes some seconds in all
-	if err := cmd.Process.Signal(os.Interrupt); err != nil {
-		t.Fatal(err)
-	}
-	_ = cmd.Wait()
-	if got := cmd.ProcessState.ExitCode(); got != statusInterrupted {
-		t.Fatalf("exit status %d, want %d; it said %q", got, statusInterrupted, said.String())
-	}
-	if _, err := os.Stat(out); !os.IsNotExist(err) {
-		t.Errorf("the output folder is there: %v", err)
-	}
+	interrupted(t, out, "source", file, "--out", out)
 }
 
 // manySettings is a tomography of a Bell state with plates at 4000 angles.
