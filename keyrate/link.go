@@ -19,6 +19,7 @@ type Arm struct {
 type Link struct {
 	PulseRateHz        float64    // pulses per second; 0: continuous
 	Modes              float64    // Schmidt modes per polarisation, ≥ 1; +Inf: Poisson, as every continuous source is
+	PairsPerEmitted    float64    // behind pass bands, pairs of the parting that stand for one emitted (sources.Parting); 0: 1
 	StateError         [2]float64 // error of a lone pair in the key and the check basis
 	Arms               [2]Arm
 	SpreadFWHMPs       float64 // continuous: spread of the difference of the arrival times
@@ -40,7 +41,7 @@ type OperatingPoint struct {
 // key-making; UsableBps alone has the duty cycle taken off.
 type Rate struct {
 	SlotsHz      float64
-	PairsPerSlot float64
+	PairsPerSlot float64 // of the parting behind pass bands
 	WindowShare  float64 // pulsed: the product of both arms'
 	Arms         [2]ArmRate
 	SiftedHz     [2]float64 // of each basis

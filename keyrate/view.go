@@ -42,6 +42,9 @@ type basisView struct {
 
 // view works out dead time and noise of every detector.
 func (l *Link) view(p OperatingPoint) view {
+	if l.PairsPerEmitted > 0 {
+		p.PairRateHz *= l.PairsPerEmitted
+	}
 	v := view{link: l, pairRateHz: p.PairRateHz}
 	turned := 0.0
 	for i := range l.Arms {

@@ -101,19 +101,21 @@ func rivalsOf() map[string][]string {
 			"source.pulse_rate_hz", "source.pairs_per_pulse", "source.counted", powerScanEntry,
 			"source.schmidt_number", "source.max_pairs_per_pulse", "source.pump_pulse_fwhm_ps",
 		},
-		"source.pulse_rate_hz":   {"source.pair_rate_hz", "source.max_pair_rate_hz"},
-		"source.pairs_per_pulse": {"source.pair_rate_hz", "source.max_pair_rate_hz", "source.counted", powerScanEntry},
+		"source.pulse_rate_hz":   {"source.pair_rate_hz", "source.max_pair_rate_hz", delaysEntry},
+		"source.pairs_per_pulse": {"source.pair_rate_hz", "source.max_pair_rate_hz", "source.counted", powerScanEntry, delaysEntry},
 		"source.counted":         {"source.pair_rate_hz", "source.pairs_per_pulse", powerScanEntry},
 		powerScanEntry: {
 			"source.pair_rate_hz", "source.pairs_per_pulse", "source.counted", "source.unpaired_photons_hz",
 			"source.max_pair_rate_hz", "source.max_pairs_per_pulse",
 		},
+		spectralEntry: {"source.state", "source.wavelength_nm", bandwidthEntry},
 
 		"need.secret_rate_bps":  {"need.aes256_renewal_s", "need.encrypted_connections", "need.key_bits_per_day"},
 		"need.aes256_renewal_s": {"need.secret_rate_bps", "need.key_bits_per_day"},
 		"need.key_bits_per_day": {"need.secret_rate_bps", "need.aes256_renewal_s", "need.encrypted_connections"},
 	}
 	for _, k := range stateKinds {
+		m[k.name] = append(m[k.name], spectralEntry)
 		for _, other := range stateKinds {
 			if other.name != k.name {
 				m[k.name] = append(m[k.name], other.name)

@@ -18,6 +18,8 @@ func (r *reader) prepare() {
 	}
 	r.s.Source.Counted.Used = r.stated["source.counted"] != nil
 	r.s.Source.PowerScan.Used = r.stated[powerScanEntry] != nil
+	r.s.Source.Delays.Used = r.stated[delaysEntry] != nil
+	r.s.Source.SpectralMap.Used = r.stated[spectralEntry] != nil
 }
 
 // stateKinds are the descriptions of a state, of which one can stand.
@@ -58,6 +60,9 @@ func (r *reader) missing() {
 
 // need reports a name that is not stated though its group is.
 func (r *reader) need(name, hint string) {
+	if r.told(name) {
+		return
+	}
 	if group := parent(name); r.stated[name] == nil && r.stated[group] != nil && !r.wrong[group] && !r.meant[name] {
 		r.fail(name, r.keys[group], "required, but missing", hint)
 	}
@@ -69,10 +74,11 @@ func (r *reader) check() {
 	r.checkState()
 	r.checkCounted()
 	r.checkScan()
+	r.checkSpectralMap()
+	r.checkDelays()
 	r.checkArms()
 	r.checkWindow()
 	r.checkNeed()
-	r.readLaboratory()
 	if len(r.errs) > 0 {
 		return
 	}

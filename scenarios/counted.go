@@ -96,12 +96,12 @@ func (s *Scenario) countingDetector(i int) link.Detector {
 }
 
 // countingShare returns the window share when the pairs were counted at the
-// source, where no fibre spreads them.
+// source, where no fibre spreads them and no pass band narrows them.
 func (s *Scenario) countingShare() float64 {
 	c := &s.Source.Counted
 	a, b := s.countingDetector(Alice).JitterFWHMPs, s.countingDetector(Bob).JitterFWHMPs
 	if !s.Pulsed() {
-		return link.WindowShare(c.WindowPs, link.RootSumSquare(a, b, s.ClockJitterFWHMPs, s.coherence()))
+		return link.WindowShare(c.WindowPs, link.RootSumSquare(a, b, s.ClockJitterFWHMPs, s.unfiltered().coherence()))
 	}
 	pump := s.Source.PumpPulseFWHMPs
 	return link.WindowShare(c.WindowPs, link.RootSumSquare(a, s.ClockJitterFWHMPs, pump)) *

@@ -51,7 +51,8 @@ func (r *reader) useDefaults() {
 // the group out: those without any required entry do.
 func alwaysThere(group string) bool {
 	switch group {
-	case "", "distance", "uncertainty", "source.unpaired_photons_hz":
+	case "", "distance", "uncertainty", "source.unpaired_photons_hz",
+		"source.wavelength_nm", bandwidthEntry, spectralEntry + ".from_nm", spectralEntry + ".to_nm":
 		return true
 	}
 	return false
@@ -70,8 +71,30 @@ func (r *reader) applies(e *row) bool {
 	return true
 }
 
-// bandwidthOfBob is what energy conservation makes of Alice's bandwidth.
-func bandwidthOfBob(s *Scenario, arm int) (value, source string) {
+// mapEnds is where a pass band ends that is not stated.
+const mapEnds = "no pass band stated: as far as the map goes"
+
+func wholeMap(s *Scenario, _ int) (value, source string) {
+	if s.Source.SpectralMap.Used {
+		return "all", mapEnds
+	}
+	return "", ""
+}
+
+// middleOfBand is the wavelength that a spectral map tells.
+func middleOfBand(s *Scenario, arm int) (value, source string) {
+	if m := &s.Source.SpectralMap; m.Map != nil {
+		return figure(s.Source.WavelengthNm[arm]), "the middle of the pass band in the spectral map"
+	}
+	return "", ""
+}
+
+// defaultBandwidth is that of the pass band in a spectral map, or, of Bob's
+// photon, what energy conservation makes of Alice's.
+func defaultBandwidth(s *Scenario, arm int) (value, source string) {
+	if s.Source.SpectralMap.tellsWidth(arm) {
+		return figure(s.Source.BandwidthFWHMNm[arm]), "the width of the pass band in the spectral map"
+	}
 	if width := s.Bandwidth(Bob); arm == Bob && Stated(width) {
 		return brief(width), "energy conservation, from Alice's bandwidth"
 	}

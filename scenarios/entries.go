@@ -71,7 +71,7 @@ var groups = groupsOf(table)
 var requiredGroups = []string{
 	"source", "source.wavelength_nm",
 	"source.counted.singles_hz", "source.counted.background_hz", "source.counted.detector",
-	"arms", "arms.alice", "arms.bob", "detectors",
+	"source.delays.detector", "arms", "arms.alice", "arms.bob", "detectors",
 }
 
 // byName finds a row by its pattern.

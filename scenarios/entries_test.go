@@ -6,7 +6,6 @@ import (
 	"strconv"
 	"strings"
 	"testing"
-	"testing/fstest"
 
 	"pairspan/sources"
 )
@@ -40,6 +39,10 @@ func beside(name string) []Change {
 		return []Change{{"need.aes256_renewal_s", "60"}}
 	case strings.HasPrefix(name, "source.power_scan"):
 		return []Change{{"source.power_scan", "{ file: power-scan.csv, power_mw: 2, order: 2 }"}}
+	case strings.HasPrefix(name, "source.spectral_map"):
+		return []Change{{"source.spectral_map", "{ file: spectral-map.csv }"}}
+	case strings.HasPrefix(name, "source.delays"):
+		return []Change{{"source.delays", "{ file: delays.csv, detector: { alice: gated, bob: gated } }"}}
 	case strings.HasPrefix(name, "finite_key"):
 		return []Change{{"finite_key", "{ sifted_bits_per_block: 2.0e+6, epsilon_total: 2.0e-10 }"}}
 	case strings.HasPrefix(name, "source.state.visibility"):
@@ -53,7 +56,7 @@ func beside(name string) []Change {
 // Every entry of the table can be set by a change, and is read back where
 // Number says it lives; every example of the starting file is valid.
 func TestEveryEntryRoundTrips(t *testing.T) {
-	base, err := Read(fstest.MapFS{"power-scan.csv": {Data: []byte(plainScan)}}, "x.yaml", []byte(errBase))
+	base, err := Read(laboratory, "x.yaml", []byte(errBase))
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -66,6 +69,9 @@ func TestEveryEntryRoundTrips(t *testing.T) {
 			example := strings.Replace(r.exampleFor(""), starterDetector, fullDetector, 1)
 			if strings.HasSuffix(r.name, "."+eitherArm) {
 				example = r.example
+				if strings.HasSuffix(name, ".bob") && r.bob != "" {
+					example = r.bob
+				}
 				if r.form == detectorForm {
 					example = fullDetector
 				}

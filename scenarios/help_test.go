@@ -34,6 +34,12 @@ detectors:
 
 var noFiles fs.FS = fstest.MapFS{}
 
+// laboratory is a folder with the files that the examples of the table name.
+var laboratory = fstest.MapFS{
+	"state.csv": {Data: []byte(bellCSV)}, "counts.csv": {Data: []byte(bellCounts)}, "power-scan.csv": {Data: []byte(plainScan)},
+	"spectral-map.csv": {Data: []byte(plainMap)}, "delays.csv": {Data: []byte(plainDelays)},
+}
+
 func mustRead(t testing.TB, text string) *Scenario {
 	t.Helper()
 	s, err := Read(noFiles, "x.yaml", []byte(text))

@@ -38,7 +38,7 @@ func TestFilesBesideTheScenario(t *testing.T) {
 	if s.Source.State.Kind != sources.DensityMatrixKind || len(s.Repairs) > 0 {
 		t.Errorf("%+v, %v", s.Source.State, s.Repairs)
 	}
-	if len(s.Inputs) != 2 || s.Inputs[0].Name != path || s.Inputs[1] != (Input{"runs/bell.csv", bellCSV}) {
+	if len(s.Inputs) != 2 || s.Inputs[0].Name != path || s.Inputs[1] != (Input{"runs/bell.csv", bellCSV, "source.state.density_matrix"}) {
 		t.Errorf("inputs %q", s.Inputs)
 	}
 	// A link that leads out of the folder is not followed.

@@ -39,7 +39,7 @@ func (d *Document) read(root *node) *reader {
 		meant: map[string]bool{}, wrong: map[string]bool{},
 	}
 	r.s.document = &Document{root, d.files, d.text}
-	r.s.Inputs = []Input{{d.files.scenario, d.text}}
+	r.s.Inputs = []Input{{Name: d.files.scenario, Text: d.text}}
 	if len(names) > maxDetectors {
 		r.fail("detectors", root.get("detectors").at, fmt.Sprintf("%d detectors, and at most %d can stand", len(names), maxDetectors), "keep those that this link may use")
 		return r
@@ -49,6 +49,7 @@ func (d *Document) read(root *node) *reader {
 	for _, l := range r.leaves {
 		r.value(l)
 	}
+	r.readLaboratory()
 	r.missing()
 	r.useDefaults()
 	r.check()

@@ -33,9 +33,10 @@ func TestDefaults(t *testing.T) {
 		Source: Source{
 			PairRateHz: 2e6, PulseRateHz: nan, PairsPerPulse: nan, SchmidtNumber: nan, MaxPairRateHz: nan, MaxPairsPerPulse: nan,
 			Counted:   Counted{SinglesHz: [2]float64{nan, nan}, CoincidencesHz: nan, WindowPs: nan, BackgroundHz: [2]float64{nan, nan}},
-			PowerScan: PowerScan{PowerMW: nan, Order: nan, LinearNoiseHzPerMW: [2]float64{nan, nan}},
+			PowerScan: PowerScan{PowerMW: nan, WindowShare: nan, Order: nan, LinearNoiseHzPerMW: [2]float64{nan, nan}},
 			State:     sources.FromTangle(0.86), MeasuredCAR: nan, WavelengthNm: [2]float64{1550, 1550},
 			PumpPulseFWHMPs: nan, BandwidthFWHMNm: [2]float64{0.8, nan},
+			SpectralMap: SpectralMap{FromNm: [2]float64{nan, nan}, ToNm: [2]float64{nan, nan}},
 		},
 		Arms:       [2]Arm{alice, bob},
 		Detectors:  []Detector{{Name: "gated", Price: nan, SitePrice: nan, Detector: link.Detector{Efficiency: 0.2, DarkCountsHz: 1200, JitterFWHMPs: 180, DeadTimeNs: 10000}}},
@@ -44,7 +45,7 @@ func TestDefaults(t *testing.T) {
 		NeedBps: nan, AES256RenewalS: nan, EncryptedConnections: nan, KeyBitsPerDay: nan, Budget: nan, Draws: 2000, Seed: 1,
 		Measured: Measured{[2]float64{nan, nan}, nan, nan, nan, nan, nan},
 		ToKm:     nan, Points: 241, Lengthen: LengthenBob,
-		Inputs: []Input{{"x.yaml", errBase}},
+		Inputs: []Input{{Name: "x.yaml", Text: errBase}},
 	}
 	s := mustRead(t, errBase)
 	used := s.DefaultsUsed

@@ -15,6 +15,7 @@ type PowerScan struct {
 	Used               bool
 	PowerMW            float64
 	Order              float64          // 1 or 2: pairs grow as the power to this
+	WindowShare        float64          // of the pairs, in the window that was counted; 0 to 1
 	LinearNoiseHzPerMW [2]float64       // light without a partner inside the source; NaN: not known
 	Detector           [2]string        // that counted, names in Scenario.Detectors; "": not stated
 	Fit                *sources.ScanFit // what the scan says, once it is read
@@ -67,6 +68,9 @@ func (r *reader) powerScan(_ string, data []byte) error {
 		return nil // which is an error already
 	}
 	options := sources.ScanOptions{Order: int(p.Order)}
+	if Stated(p.WindowShare) { // its default is not filled in yet
+		options.WindowShare = p.WindowShare
+	}
 	for i := range p.LinearNoiseHzPerMW {
 		if noise := p.LinearNoiseHzPerMW[i]; Stated(noise) {
 			options.LinearNoisePerMW[i] = &noise

@@ -75,7 +75,8 @@ type Source struct {
 	WavelengthNm    [2]float64
 	PumpPulseFWHMPs float64
 	BandwidthFWHMNm [2]float64 // Bob's is NaN where it follows by energy conservation
-	ArrivalFWHMPs   float64    // continuous: spread of a pair's arrivals as measured without fibre; 0: as detectors, clock and coherence make it
+	SpectralMap     SpectralMap
+	Delays          Delays
 }
 
 // Counted is what was counted at the source, without analysers and with one
@@ -163,8 +164,9 @@ type Change struct{ Entry, Value string }
 
 // Input is one file that was read, as it was read.
 type Input struct {
-	Name string // as named by the person or by the scenario
-	Text string
+	Name  string // as named by the person or by the scenario
+	Text  string
+	Entry string // that names it; "" of a file that no entry names
 }
 
 // AES256Bits is the length of an AES-256 key.

@@ -35,6 +35,8 @@ var laboratoryFiles = []struct {
 	{"source.state.density_matrix", (*reader).matrix},
 	{"source.state.counts", (*reader).counts},
 	{powerScanEntry + ".file", (*reader).powerScan},
+	{delaysEntry + ".file", (*reader).delays},
+	{spectralEntry + ".file", (*reader).spectralMap},
 }
 
 // readLaboratory reads the laboratory files that the scenario names.
@@ -72,7 +74,7 @@ func (r *reader) file(entry string) (name string, text []byte) {
 		r.errs = append(r.errs, Error{r.files.shown(name), trouble.at.line, trouble.at.column, entry, trouble.problem, trouble.hint})
 		return "", nil
 	}
-	r.s.Inputs = append(r.s.Inputs, Input{n.text, string(data)})
+	r.s.Inputs = append(r.s.Inputs, Input{n.text, string(data), entry})
 	return name, plain
 }
 

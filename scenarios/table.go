@@ -23,7 +23,7 @@ var titleRows = []row{
 	},
 }
 
-var sourceRows = slices.Concat(emissionRows, countedRows, scanRows, stateRows, lightRows)
+var sourceRows = slices.Concat(emissionRows, countedRows, scanRows, stateRows, spectralRows, lightRows, delayRows)
 
 var emissionRows = []row{
 	{
@@ -164,6 +164,7 @@ var lightRows = []row{
 	},
 	{
 		name: "source.wavelength_nm." + eitherArm, unit: "nm", lo: 400, hi: 2000, required: true, active: true, example: "1550",
+		derive:  middleOfBand,
 		meaning: "centre wavelength of the arm's photon, in vacuum",
 		at:      func(s *Scenario, i int) *float64 { return &s.Source.WavelengthNm[i] },
 	},
@@ -181,7 +182,7 @@ var lightRows = []row{
 	{
 		name: "source.bandwidth_fwhm_nm." + eitherArm, unit: "nm", hi: 200, above: true, example: "0.8",
 		def: "by energy conservation", source: "Alice's bandwidth x (Bob's wavelength / Alice's)^2",
-		derive:  bandwidthOfBob,
+		derive:  defaultBandwidth,
 		meaning: "bandwidth of the arm's photon, full width at half maximum; Alice's is required",
 		at:      func(s *Scenario, i int) *float64 { return &s.Source.BandwidthFWHMNm[i] },
 	},

@@ -4,7 +4,6 @@ import (
 	"regexp"
 	"strings"
 	"testing"
-	"testing/fstest"
 	"unicode/utf8"
 )
 
@@ -40,7 +39,6 @@ var leftOut = regexp.MustCompile(`^( *)#( *[a-z_]+:.*)$`)
 // it, states that entry at the right place: it is known there, and what may
 // be wrong is only what it cannot stand beside.
 func TestStarterCanBeUncommented(t *testing.T) {
-	files := fstest.MapFS{"state.csv": {Data: []byte(bellCSV)}, "counts.csv": {Data: []byte(bellCounts)}, "power-scan.csv": {Data: []byte(plainScan)}}
 	lines := strings.Split(Starter(), "\n")
 	n := 0
 	for i, line := range lines {
@@ -54,7 +52,7 @@ func TestStarterCanBeUncommented(t *testing.T) {
 		for j := i + 1; j < len(lines) && strings.HasPrefix(lines[j], m[1]+"#  "); j++ {
 			edited[j] = m[1] + strings.TrimPrefix(lines[j], m[1]+"#")
 		}
-		_, err := Read(files, "x.yaml", []byte(strings.Join(edited, "\n")))
+		_, err := Read(laboratory, "x.yaml", []byte(strings.Join(edited, "\n")))
 		if err == nil {
 			continue
 		}

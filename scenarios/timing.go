@@ -45,11 +45,9 @@ func (s *Scenario) coherence() float64 {
 // sign cancels (Franson, PRA 45, 3126 (1992)).
 func (s *Scenario) differenceSpread(lengthKm [2]float64) float64 {
 	dispersion := s.dispersionSpread(Alice, lengthKm[Alice]) + s.dispersionSpread(Bob, lengthKm[Bob])
-	if measured := s.Source.ArrivalFWHMPs; measured > 0 {
-		return link.RootSumSquare(measured, dispersion)
-	}
 	return link.RootSumSquare(
-		s.detectorOf(Alice).JitterFWHMPs, s.detectorOf(Bob).JitterFWHMPs, s.ClockJitterFWHMPs, s.coherence(), dispersion)
+		s.detectorOf(Alice).JitterFWHMPs, s.detectorOf(Bob).JitterFWHMPs, s.ClockJitterFWHMPs,
+		max(s.coherence(), s.Source.Delays.RestFWHMPs), dispersion)
 }
 
 // clockSpread returns the FWHM of one photon's arrival against the clock of a

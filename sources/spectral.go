@@ -1,5 +1,10 @@
 package sources
 
+import (
+	"errors"
+	"fmt"
+)
+
 // SpectralMap is a source's light resolved in wavelength: the pairs by the
 // spectral bins of Alice's and of Bob's photon. ReadSpectralMap makes one;
 // nothing of it is to be changed.
@@ -53,6 +58,59 @@ func (b *Band) WidthNm(arm int) float64 { return b.ToNm[arm] - b.FromNm[arm] }
 
 // CentreNm returns the middle of an arm's band.
 func (b *Band) CentreNm(arm int) float64 { return (b.FromNm[arm] + b.ToNm[arm]) / 2 }
+
+// Within returns the pair of pass bands of the bins whose centres lie between
+// two wavelengths in each arm, both inside; NaN stands for the end of the map.
+// The error names the arm in which no centre lies there, and -1 where no pair
+// passes both.
+func (m *SpectralMap) Within(fromNm, toNm [2]float64) (b Band, arm int, err error) {
+	var first, last [2]int
+	for arm, centres := range m.CentreNm {
+		first[arm], last[arm] = -1, -1
+		for i, nm := range centres {
+			if nm < fromNm[arm] || nm > toNm[arm] { // neither holds of NaN
+				continue
+			}
+			if last[arm] = i; first[arm] < 0 {
+				first[arm] = i
+			}
+		}
+		if last[arm] < 0 {
+			return Band{}, arm, fmt.Errorf("no bin of %s's lies there: its centres lie from %.9g to %.9g nm", armNames[arm], centres[0], centres[len(centres)-1])
+		}
+	}
+	if b = m.Band(first, last); !(b.Share > 0) {
+		return Band{}, -1, errors.New("no pair passes both pass bands")
+	}
+	return b, 0, nil
+}
+
+// BinsWithPairs counts the bins of a band that hold pairs.
+func (m *SpectralMap) BinsWithPairs(b *Band) (n int) {
+	for i := b.First[0]; i <= b.Last[0]; i++ {
+		for k := b.First[1]; k <= b.Last[1]; k++ {
+			if m.Bins[i][k].Share > 0 {
+				n++
+			}
+		}
+	}
+	return n
+}
+
+// State returns what is known of the pairs in a band: the mixture of its bins,
+// or the tangle of its only bin with pairs. It is unknown where tangles of
+// several bins alone are known: see MostConcurrence.
+func (m *SpectralMap) State(b *Band) State {
+	switch {
+	case !m.Tangles:
+		rho, _ := m.Mixture(b.First, b.Last)
+		return FromDensityMatrix(rho)
+	case m.BinsWithPairs(b) == 1:
+		c := m.MostConcurrence(b.First, b.Last)
+		return FromTangle(c * c)
+	}
+	return State{}
+}
 
 // Whole returns the widest pair of pass bands, the whole map.
 func (m *SpectralMap) Whole() Band {

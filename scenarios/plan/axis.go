@@ -138,6 +138,8 @@ func (a *asker) instead(entry string) string {
 		return "the state is known by " + a.stateQuestions()[0].entry
 	case strings.HasPrefix(entry, "source.pair"):
 		return "the source is described by " + pumpEntry(a.s)
+	case strings.HasPrefix(entry, "source.spectral_map.") || strings.HasPrefix(entry, "source.power_scan."):
+		return "it is used where the file is read: compare takes cases with other values"
 	case strings.HasSuffix(entry, "measured_loss_db"):
 		return "the run is itemised: try fixed_loss_db"
 	}

@@ -6,7 +6,6 @@ import (
 	"strings"
 
 	"pairspan/scenarios"
-	"pairspan/sources"
 )
 
 // What is not an entry of the link: it heads the plan, or is shown elsewhere.
@@ -160,7 +159,9 @@ func wordsOf(s *scenarios.Scenario) map[string]string {
 	put("source.pairs_per_pulse", "auto", s.Source.PumpAuto && s.Pulsed())
 	put("window_ps", "auto", s.WindowAuto)
 	put("key_basis_share", "auto", s.KeyShareAuto)
-	namedFiles(s, put)
+	for _, in := range s.Inputs {
+		put(in.Entry, in.Name, in.Entry != "")
+	}
 	for i, arm := range [2]string{"alice", "bob"} {
 		a, at := &s.Arms[i], "arms."+arm+"."
 		words[at+"fibre"], words[at+"detector"] = a.Fibre, a.Detector
@@ -168,6 +169,7 @@ func wordsOf(s *scenarios.Scenario) map[string]string {
 		put(at+"basis_choice", "passive", a.Passive)
 		put(at+"fixed_loss_db", "from_counts", a.FixedLossFromCounts)
 		put("source.counted.detector."+arm, s.Source.Counted.Detector[i], s.Source.Counted.Used)
+		put("source.delays.detector."+arm, s.Source.Delays.Detector[i], s.Source.Delays.Used)
 		put("source.power_scan.detector."+arm, s.Source.PowerScan.Detector[i], s.Source.PowerScan.Detector[i] != "")
 	}
 	for i := range s.Detectors {
@@ -175,20 +177,4 @@ func wordsOf(s *scenarios.Scenario) map[string]string {
 		put("detectors."+d.Name+".class", d.Class, d.Class != "")
 	}
 	return words
-}
-
-// namedFiles puts the laboratory files under the entries that name them. They
-// are read in this order, after the scenario itself.
-func namedFiles(s *scenarios.Scenario, put func(name, word string, holds bool)) {
-	files := s.Inputs[min(1, len(s.Inputs)):]
-	next := func(entry string, used bool) {
-		if used && len(files) > 0 {
-			put(entry, files[0].Name, true)
-			files = files[1:]
-		}
-	}
-	measured := s.Source.State.Kind == sources.DensityMatrixKind
-	next("source.state.density_matrix", measured && s.Source.Counts == nil)
-	next("source.state.counts", measured && s.Source.Counts != nil)
-	next("source.power_scan.file", s.Source.PowerScan.Used)
 }

@@ -55,7 +55,8 @@ func isPrice(entry string) bool {
 // isMeasurement reports whether an entry holds a measurement by its meaning.
 func isMeasurement(entry string) bool {
 	switch entry {
-	case "source.state.density_matrix", "source.state.counts", "source.state.measured_car", "source.power_scan.file":
+	case "source.state.density_matrix", "source.state.counts", "source.state.measured_car", "source.power_scan.file",
+		"source.delays.file", "source.spectral_map.file":
 		return true
 	}
 	return strings.HasPrefix(entry, "source.counted.") || strings.HasSuffix(entry, ".measured_loss_db")

@@ -177,5 +177,6 @@ func (t *task) matrix(text []byte) error {
 	}
 	t.State = stateOf(rho, nil)
 	t.Sentence = t.State.sentence()
+	t.stateInScenario("density_matrix")
 	return t.carryState(rho, nil)
 }

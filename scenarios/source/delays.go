@@ -74,10 +74,15 @@ func (t *task) timed(fit sources.DelayFit) error {
 		t.notTold("the link's source is pulsed, so each arm is timed against the pulses, and a histogram of both does not tell how much is whose.")
 		return nil
 	}
+	t.delaysInScenario(t.link)
 	c := t.link.Clone()
 	before := c.Spread(c.DistanceKm())
-	c.Source.ArrivalFWHMPs = fit.FWHMPs.Value
-	t.warn("delays", fmt.Sprintf("The spread of %s ps is taken for the link's own detectors and clock, measured without the link's fibre, whose dispersion is added: %s ps in all, where the scenario's figures give %s ps.",
-		three(fit.FWHMPs.Value), three(c.Spread(c.DistanceKm())), three(before)))
-	return t.carry(c, []plan.Change{{Entry: "detectors, clock and coherence", Value: "an arrival spread of " + three(fit.FWHMPs.Value) + " ps FWHM"}})
+	t.warn("delays", c.SetDelays(&fit, [2]string{c.Arms[0].Detector, c.Arms[1].Detector})...)
+	t.warn("delays", fmt.Sprintf("The histogram is taken for one of the link's own detectors without its fibre. With its clocks and the fibre's dispersion the arrivals spread by %s ps, where the scenario's figures give %s ps.",
+		three(c.Spread(c.DistanceKm())), three(before)))
+	return t.carry(c, []plan.Change{
+		{Entry: "source.delays.file", Value: t.Title},
+		{Entry: "source.delays.detector.alice", Value: c.Arms[0].Detector},
+		{Entry: "source.delays.detector.bob", Value: c.Arms[1].Detector},
+	})
 }

@@ -25,10 +25,15 @@ func (t *task) scan(text []byte) error {
 	t.warn("power-scan", fit.Doubts...)
 	t.detectors()
 	t.Sentence = t.PowerScan.sentence()
-	if t.link == nil {
-		return nil
+	if t.link != nil {
+		if err := t.pumped(scan, fit); err != nil {
+			return err
+		}
 	}
-	return t.pumped(scan, fit)
+	if fit.PairsHzPerMWk.Known() {
+		t.scanInScenario(scan)
+	}
+	return nil
 }
 
 // scanOf writes a fit down.

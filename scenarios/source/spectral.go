@@ -4,7 +4,6 @@ import (
 	"bytes"
 	"fmt"
 
-	"pairspan/link"
 	"pairspan/scenarios"
 	"pairspan/scenarios/plan"
 	"pairspan/sources"
@@ -30,6 +29,7 @@ func (t *task) spectralMap(text []byte) error {
 	if best := t.SpectralMap.Best; best != nil {
 		band = best.within(m)
 	}
+	t.mapInScenario(t.SpectralMap.Best)
 	if rho, ok := m.Mixture(band.First, band.Last); ok && !m.Tangles {
 		t.State = stateOf(rho, nil)
 	}
@@ -47,23 +47,39 @@ func (b *SpectralBand) within(m *sources.SpectralMap) sources.Band {
 
 // passed says what the link carries behind a pair of pass bands.
 func (t *task) passed(m *sources.SpectralMap, b *sources.Band) error {
-	if m.Tangles && binsWithPairs(m, b) > 1 {
+	if m.State(b).Knowledge() == sources.Unknown {
 		t.tanglesAlone()
 		return nil
 	}
-	rho, _ := m.Mixture(b.First, b.Last)
-	state := sources.FromDensityMatrix(rho)
-	if m.Tangles {
-		c := m.MostConcurrence(b.First, b.Last) // of the one bin with pairs
-		state = sources.FromTangle(c * c)
-	}
-	c, replaced := behindBands(withState(t.link, state), b)
-	replaced = append(replaced, plan.Change{Entry: "source.state", Value: "that of the pairs in the pass bands, from " + t.Title})
-	if err := t.carry(c, replaced); err != nil {
+	c := t.link.Clone()
+	c.SetPassBands(m, *b) // what it doubts is said of the map already
+	without(c, "source.state")
+	if err := t.carry(c, t.bandEntries(c)); err != nil {
 		return err
 	}
-	*t.Link.PairRateHz *= b.Share / partingOf(b).pairs // of those that pass both
+	*t.Link.PairRateHz *= b.Share // of those that pass both
 	return nil
+}
+
+// bandEntries returns what a scenario would say of its pass bands, and what
+// follows from them.
+func (t *task) bandEntries(c *scenarios.Scenario) []plan.Change {
+	entries := []plan.Change{{Entry: "source.spectral_map.file", Value: t.Title}}
+	src := &c.Source
+	for _, of := range []struct {
+		entry string
+		value [2]float64
+	}{
+		{"source.spectral_map.from_nm.", src.SpectralMap.FromNm},
+		{"source.spectral_map.to_nm.", src.SpectralMap.ToNm},
+		{"source.wavelength_nm.", src.WavelengthNm},
+		{"source.bandwidth_fwhm_nm.", src.BandwidthFWHMNm},
+	} {
+		for arm, name := range armEntries {
+			entries = append(entries, plan.Change{Entry: of.entry + name, Value: fmt.Sprintf("%.9g", of.value[arm])})
+		}
+	}
+	return append(entries, plan.Change{Entry: "source.state", Value: "that of the pairs in the pass bands"})
 }
 
 // tanglesAlone is the answer where nothing is known at worst.
@@ -75,44 +91,4 @@ func (t *task) tanglesAlone() {
 	}
 	t.Link.Sentence = fmt.Sprintf("%s If all bins hold Werner states about one Bell state, %s bit/s; at best %s.",
 		t.Link.Sentence, three(best.OnLink.UsableRateBps), three(*best.OnLink.UsableRateAtBestBps))
-}
-
-// behindBands returns a link whose source passes a pair of pass bands first, and
-// what that changes. Pairs that a band parts are pairs that lost one photon on
-// the way: see parting.
-func behindBands(s *scenarios.Scenario, b *sources.Band) (*scenarios.Scenario, []plan.Change) {
-	c, through := writtenOut(s), partingOf(b)
-	var replaced []plan.Change
-	set := func(entry string, value float64) {
-		replaced = append(replaced, plan.Change{Entry: entry, Value: hz(value)})
-	}
-	src := &c.Source
-	for _, rate := range []*float64{&src.PairRateHz, &src.PairsPerPulse, &src.MaxPairRateHz, &src.MaxPairsPerPulse} {
-		*rate *= through.pairs // those that are not stated stay so
-	}
-	set(emissionEntry(c.Pulsed()), emitted(c))
-	bandwidth := [2]float64{s.Bandwidth(0), s.Bandwidth(1)}
-	for arm := range c.Arms {
-		src.BandwidthFWHMNm[arm] = bandwidth[arm]
-		if width := b.WidthNm(arm); width > 0 {
-			src.BandwidthFWHMNm[arm] = width
-			set("source.bandwidth_fwhm_nm."+armEntries[arm], src.BandwidthFWHMNm[arm])
-		}
-		src.WavelengthNm[arm] = b.CentreNm(arm)
-		replaced = append(replaced, plan.Change{Entry: "source.wavelength_nm." + armEntries[arm], Value: fmt.Sprintf("%.8g", src.WavelengthNm[arm])})
-		c.Arms[arm].FixedLossDB = float64(c.FixedLoss(arm) + link.LossOf(through.passes[arm]))
-		set("arms."+armEntries[arm]+".fixed_loss_db", c.Arms[arm].FixedLossDB)
-		src.UnpairedHz[arm] /= through.passes[arm] // nothing of it is lost
-	}
-	return c, replaced
-}
-
-// emitted is what a scenario's emission entry says, or its ceiling where the
-// planner chooses.
-func emitted(s *scenarios.Scenario) float64 {
-	rate := s.Setting().PairRateHz
-	if s.Pulsed() {
-		return rate / s.Source.PulseRateHz
-	}
-	return rate
 }

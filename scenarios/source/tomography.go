@@ -21,6 +21,7 @@ func (t *task) tomography(text []byte) error {
 	if err := t.fitted(counts, fit); err != nil {
 		return err
 	}
+	t.stateInScenario("counts")
 	if w := fit.Warning(); w != "" {
 		t.warn("state-fits-badly", w)
 	}

@@ -31,9 +31,10 @@ type Result struct {
 	Warnings     []Warning        `json:"warnings"`
 	Cautions     []plan.Caution   `json:"cautions"` // about light, and trust where there is key
 	References   []plan.Reference `json:"references"`
-	Sentence     string           `json:"sentence"` // what the source is
-	State        *State           `json:"state"`    // null where the file says nothing of it
-	Fit          *Fit             `json:"fit"`      // of a tomography
+	Sentence     string           `json:"sentence"`    // what the source is
+	InScenario   *string          `json:"in_scenario"` // what stands under a scenario's source for the file to be read there; null of a scenario, and of delays without a link
+	State        *State           `json:"state"`       // null where the file says nothing of it
+	Fit          *Fit             `json:"fit"`         // of a tomography
 	PowerScan    *ScanResult      `json:"power_scan"`
 	Delays       *DelayResult     `json:"delays"`
 	SpectralMap  *SpectralMap     `json:"spectral_map"`

@@ -44,6 +44,7 @@ type sourcePage struct {
 	Spectral *spectralSection
 	Link     *linkSection
 
+	InScenario string
 	Light      string  // the caution about light, beside powers
 	Doubts     []doubt // all
 	Named      []doubt // the first of each name
@@ -67,6 +68,9 @@ func newSourcePage(r *source.Result) *sourcePage {
 	}
 	if r.SpectralMap != nil && g.State != nil {
 		g.State.Facts.Caption += ", of the pairs that pass " + bandsMeant(r.SpectralMap)
+	}
+	if r.InScenario != nil {
+		g.InScenario = *r.InScenario
 	}
 	g.sortDoubts(r)
 	for i, f := range g.figures() {

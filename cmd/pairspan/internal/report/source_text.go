@@ -17,6 +17,9 @@ func SourceText(w io.Writer, r *source.Result) error {
 	t.gap()
 	t.wrap(r.Sentence, "")
 	t.carried(r.Link)
+	if r.InScenario != nil {
+		t.wrap(inScenario+*r.InScenario, "  ")
+	}
 	t.bands(r.SpectralMap)
 	t.state(r)
 	if f := r.Fit; f != nil {
@@ -33,6 +36,9 @@ func SourceText(w io.Writer, r *source.Result) error {
 	_, err := io.WriteString(w, strings.Join(t.lines, "\n")+"\n")
 	return err
 }
+
+// inScenario leads to what makes a file the source of a scenario.
+const inScenario = "Under source in a scenario: "
 
 const lightCaution = "An estimate, not a security claim. Pump powers and open fibre ends: invisible laser radiation (IEC 60825-1 and -2); local rules and licensed persons decide."
 
