@@ -139,7 +139,7 @@ func TestFileWithoutEnd(t *testing.T) {
 
 func TestBuiltInScenariosLoad(t *testing.T) {
 	names, err := fs.Glob(Examples, "*.yaml")
-	if err != nil || len(names) != 4 {
+	if err != nil || len(names) != 5 {
 		t.Fatal(names, err)
 	}
 	for _, name := range names {

@@ -25,6 +25,8 @@ func TestEntriesAreTheFile(t *testing.T) {
 			"  max_pair_rate_hz: 2.0e+7\n", "",
 			"state: { tangle: 0.86 }", "state: { counts: tomography.csv }",
 		).Replace(base),
+		"mapped": strings.Replace(base, "state: { tangle: 0.86 }\n  wavelength_nm: { alice: 1550, bob: 1550 }\n  bandwidth_fwhm_nm: 0.8\n",
+			"spectral_map: { file: spectral-map.csv, to_nm: { alice: 1548.8 } }\n  delays: { file: delays.csv, detector: { alice: free_running, bob: free_running } }\n", 1),
 		"auto": strings.Replace(base, "pair_rate_hz: 2.0e+6", "pair_rate_hz: auto", 1) + "key_basis_share: auto\n",
 	}
 	examples, err := fs.Glob(scenarios.Examples, "*.yaml")
@@ -195,3 +197,21 @@ origins:
   arms.bob.fixed_loss_db: a guess from Quarrytown
 `
 )
+
+// TestFilesOfComparedCases are among the inputs, each once.
+func TestFilesOfComparedCases(t *testing.T) {
+	text := strings.Replace(base, "state: { tangle: 0.86 }", "state: { counts: tomography.csv }", 1) +
+		"compare:\n  - { name: matrix, change: { source.state.density_matrix: pulsed-state.csv } }\n" +
+		"  - { name: longer, change: { arms.bob.length_km: 9 } }\n"
+	s, err := scenarios.Read(scenarios.Examples, "x.yaml", []byte(text))
+	if err != nil {
+		t.Fatal(err)
+	}
+	var names []string
+	for _, in := range describe(s, "").Inputs {
+		names = append(names, in.Name)
+	}
+	if want := []string{"x.yaml", "tomography.csv", "pulsed-state.csv"}; !slices.Equal(names, want) {
+		t.Errorf("%v, want %v", names, want)
+	}
+}

@@ -4,6 +4,7 @@ import (
 	"context"
 	"crypto/sha256"
 	"encoding/hex"
+	"slices"
 
 	"pairspan/keyrate"
 	"pairspan/scenarios"
@@ -96,6 +97,20 @@ func addCurves(ctx context.Context, p *Plan, asked []named, toKm float64, points
 	return nil
 }
 
+// filesRead lists every file that was read, the scenario's own first, then those
+// that compared cases alone name.
+func filesRead(s *scenarios.Scenario) []scenarios.Input {
+	all := slices.Clone(s.Inputs)
+	for i := range s.Compare {
+		for _, in := range s.Compare[i].Scenario.Inputs {
+			if !slices.ContainsFunc(all, func(have scenarios.Input) bool { return have.Name == in.Name }) {
+				all = append(all, in)
+			}
+		}
+	}
+	return all
+}
+
 // describe fills in what the plan says of its own making.
 func describe(s *scenarios.Scenario, version string) *Plan {
 	p := &Plan{
@@ -106,7 +121,7 @@ func describe(s *scenarios.Scenario, version string) *Plan {
 		Entries: entries(s), Withheld: []string{},
 		Cautions: cautions, References: references,
 	}
-	for _, in := range s.Inputs {
+	for _, in := range filesRead(s) {
 		sum := sha256.Sum256([]byte(in.Text))
 		p.Inputs = append(p.Inputs, Input{in.Name, hex.EncodeToString(sum[:]), in.Text})
 	}
