@@ -10,7 +10,7 @@ type Arm struct {
 	Misalignment  float64       // e_mis, residual error of the polarisation frame, 0 to 1/2
 	PMDError      float64       // chance that PMD flips the bit, 0 to 1/3
 	BackgroundHz  float64       // counts per detector with the source blocked, above its dark counts
-	UnpairedHz    float64       // light of the source without a partner, before any loss
+	UnpairedHz    float64       // light of the source without a partner, before any loss; pulsed: made in its pulses
 	SpreadFWHMPs  float64       // pulsed: arrival spread against the clock
 }
 

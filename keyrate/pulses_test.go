@@ -144,6 +144,19 @@ func (s *pulses) thermalPairs(set [2]int) {
 	}
 }
 
+// alone are photons without a partner, which come with the pulse.
+func (s *pulses) alone(set [2]int) {
+	for arm, basis := range set {
+		mean := s.link.Arms[arm].UnpairedHz / s.link.PulseRateHz
+		for at := s.r.ExpFloat64(); at < mean; at += s.r.ExpFloat64() {
+			if s.link.Arms[arm].Passive {
+				basis = s.basis()
+			}
+			s.photon(arm, basis, s.coin())
+		}
+	}
+}
+
 // next plays one slot.
 func (s *pulses) next() {
 	set := [2]int{s.basis(), s.basis()}
@@ -152,6 +165,7 @@ func (s *pulses) next() {
 	} else {
 		s.thermalPairs(set)
 	}
+	s.alone(set)
 	for arm := range s.clicks {
 		s.noise(arm)
 		s.register(arm, set[arm])
@@ -238,6 +252,12 @@ func TestRatesAgainstPulses(t *testing.T) {
 			Arm{Transmittance: 0.05},
 			Arm{Transmittance: 0.4, SpreadFWHMPs: 900},
 			19.9, 100, false, false,
+		},
+		{
+			"passive and active, Poisson, light without a partner", poisson, 0.1, 0.5, 3e6,
+			Arm{Transmittance: 0.3, UnpairedHz: 2e7, SpreadFWHMPs: 700},
+			Arm{Transmittance: 0.25, UnpairedHz: 4e7},
+			8, 0, true, false,
 		},
 	} {
 		t.Run(row.name, func(t *testing.T) {

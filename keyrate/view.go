@@ -37,7 +37,8 @@ type basisView struct {
 	choice       float64 // sifting factor: share of the basis where active, else 1
 	registeredHz float64
 	live         float64
-	noiseHz      float64 // dark counts, background, unpaired light, afterpulses
+	noiseHz      float64 // at any time: dark counts, background, afterpulses; continuous: unpaired light
+	lonePerPulse float64 // pulsed: mean photons without a partner that it would count of each pulse
 }
 
 // view works out dead time and noise of every detector.
@@ -93,25 +94,30 @@ func (l *Link) respondIn(a *Arm, det *link.Detector, pairRateHz, q float64) basi
 		v.efficiency, v.choice = eta*q, 1
 		detectorShare = q / 2
 	}
-	outside := det.DarkCountsHz + a.BackgroundHz + a.UnpairedHz*eta*detectorShare
-	clicks := outside + l.pairClicks(pairRateHz, v.efficiency)
+	outside, lone := det.DarkCountsHz+a.BackgroundHz, a.UnpairedHz*eta*detectorShare
+	if l.PulseRateHz == 0 {
+		outside += lone
+	} else {
+		v.lonePerPulse = lone / l.PulseRateHz
+	}
+	clicks := outside + l.lightClicks(pairRateHz, &v)
 	v.registeredHz, v.live = det.Respond(clicks)
 	v.noiseHz = outside + det.Afterpulsing*v.registeredHz
 	return v
 }
 
-// pairClicks returns the clicks per second that paired light makes in one of
-// two detectors which see it with the efficiency eta between them. A pulse
-// makes one click at most.
-func (l *Link) pairClicks(pairRateHz, eta float64) float64 {
+// lightClicks returns the clicks per second that pairs make in one of a
+// basis's two detectors; of a pulsed source with the light without a partner,
+// which the same pulses make. A pulse makes one click at most.
+func (l *Link) lightClicks(pairRateHz float64, v *basisView) float64 {
 	if l.PulseRateHz == 0 {
-		return pairRateHz * eta / 2
+		return pairRateHz * v.efficiency / 2
 	}
-	x := pairRateHz / l.PulseRateHz * eta / 2 // mean photons a pulse
-	if math.IsInf(l.Modes, 1) {
-		return -l.PulseRateHz * math.Expm1(-x)
+	x := pairRateHz / l.PulseRateHz * v.efficiency / 2 // mean photons a pulse
+	if !math.IsInf(l.Modes, 1) {
+		x = l.Modes * math.Log1p(x/l.Modes)
 	}
-	return -l.PulseRateHz * math.Expm1(-l.Modes*math.Log1p(x/l.Modes))
+	return -l.PulseRateHz * math.Expm1(-x-v.lonePerPulse)
 }
 
 // atWindow sets the coincidence window: slots, pairs per slot, window shares.
@@ -138,7 +144,7 @@ func (v *view) slot(a, b int, e float64) Slot {
 	for i, basis := range [2]int{a, b} {
 		arm := &v.arms[i]
 		s.Efficiency[i] = arm.basis[basis].efficiency * arm.share
-		s.Noise[i] = arm.basis[basis].noiseHz * arm.windowS
+		s.Noise[i] = arm.basis[basis].noiseHz*arm.windowS + arm.basis[basis].lonePerPulse*arm.share
 	}
 	return s
 }

@@ -58,8 +58,9 @@ func mapped(t *testing.T, text, entries string, changes ...string) (*Scenario, e
 
 // TestSpectralMapInAScenario: behind pass bands a source is one with the pairs
 // that pass both, in the mixture of their states, and with light without a
-// partner where one photon passes alone. For weak Poisson light that holds to
-// rounding, so the same scenario with these figures stated makes the same key.
+// partner where one photon passes alone. For Poisson light, pulsed or not, that
+// holds to rounding, so the same scenario with these figures stated makes the
+// same key.
 func TestSpectralMapInAScenario(t *testing.T) {
 	for _, c := range []struct {
 		entries                     string
@@ -80,39 +81,55 @@ func TestSpectralMapInAScenario(t *testing.T) {
 			alice: [2]float64{1549, 1550}, bob: [2]float64{1555, 1557},
 		},
 	} {
-		s, err := mapped(t, plainMap, c.entries)
-		if err != nil {
-			t.Fatal(err)
-		}
-		middle := func(edges [2]float64) float64 { return (edges[0] + edges[1]) / 2 }
-		stated, err := Read(noFiles, "x.yaml", []byte(replaced(t,
-			"pair_rate_hz: 2.0e+6", fmt.Sprintf("pair_rate_hz: %.17g\n  unpaired_photons_hz: { alice: %.17g, bob: %.17g }", 2e6*c.share, 2e6*c.aloneAlice, 2e6*c.aloneBob),
-			"tangle: 0.86", fmt.Sprintf("visibility: { hv: 1, da: %.17g }", 2*c.coherence),
-			"wavelength_nm: { alice: 1550, bob: 1550 }", fmt.Sprintf("wavelength_nm: { alice: %g, bob: %g }", middle(c.alice), middle(c.bob)),
-			"bandwidth_fwhm_nm: 0.8", fmt.Sprintf("bandwidth_fwhm_nm: { alice: %g, bob: %g }", c.alice[1]-c.alice[0], c.bob[1]-c.bob[0]),
-		)))
-		if err != nil {
-			t.Fatal(err)
-		}
-		for _, km := range []float64{0, 6.2, 60} {
-			l, want := s.Link(km, sources.Nominal), stated.Link(km, sources.Nominal)
-			p := stated.Settle(&want, stated.Setting())
-			q := p
-			q.PairRateHz = s.Setting().PairRateHz
-			got, is := l.Key(q), want.Key(p)
-			for _, x := range [][2]float64{
-				{got.UsableBps, is.UsableBps},
-				{got.SiftedHz[0], is.SiftedHz[0]},
-				{got.QBER[0], is.QBER[0]},
-				{got.QBER[1], is.QBER[1]},
-				{got.Arms[Alice].SinglesHz, is.Arms[Alice].SinglesHz},
-				{got.Arms[Bob].SinglesHz, is.Arms[Bob].SinglesHz},
-			} {
-				if math.Abs(x[0]-x[1]) > 1e-9*x[1] {
-					t.Errorf("%q at %g km: %v, and %v with the figures stated", c.entries, km, got, is)
-					break
-				}
+		for _, emission := range [][2]string{
+			{"pair_rate_hz: 2.0e+6", "pair_rate_hz: %.17g"},
+			{"pulse_rate_hz: 1.0e+8\n  pairs_per_pulse: 0.02", "pulse_rate_hz: 1.0e+8\n  pairs_per_pulse: %.17g"},
+		} {
+			rate, pairs := 2e6, 2e6*c.share
+			if strings.Contains(emission[0], "pulse") {
+				pairs = 0.02 * c.share
 			}
+			s, err := mapped(t, plainMap, c.entries, "pair_rate_hz: 2.0e+6", emission[0])
+			if err != nil {
+				t.Fatal(err)
+			}
+			middle := func(edges [2]float64) float64 { return (edges[0] + edges[1]) / 2 }
+			stated, err := Read(noFiles, "x.yaml", []byte(replaced(t,
+				"pair_rate_hz: 2.0e+6", fmt.Sprintf(emission[1]+"\n  unpaired_photons_hz: { alice: %.17g, bob: %.17g }", pairs, rate*c.aloneAlice, rate*c.aloneBob),
+				"tangle: 0.86", fmt.Sprintf("visibility: { hv: 1, da: %.17g }", 2*c.coherence),
+				"wavelength_nm: { alice: 1550, bob: 1550 }", fmt.Sprintf("wavelength_nm: { alice: %g, bob: %g }", middle(c.alice), middle(c.bob)),
+				"bandwidth_fwhm_nm: 0.8", fmt.Sprintf("bandwidth_fwhm_nm: { alice: %g, bob: %g }", c.alice[1]-c.alice[0], c.bob[1]-c.bob[0]),
+			)))
+			if err != nil {
+				t.Fatal(err)
+			}
+			for _, km := range []float64{0, 6.2, 60} {
+				sameRates(t, fmt.Sprintf("%q, %s at %g km", c.entries, emission[0], km), s, stated, km)
+			}
+		}
+	}
+}
+
+// sameRates holds two scenarios to the same rates at the second one's best
+// setting, the pump as each states it.
+func sameRates(t *testing.T, name string, s, stated *Scenario, km float64) {
+	t.Helper()
+	l, want := s.Link(km, sources.Nominal), stated.Link(km, sources.Nominal)
+	p := stated.Settle(&want, stated.Setting())
+	q := p
+	q.PairRateHz = s.Setting().PairRateHz
+	got, is := l.Key(q), want.Key(p)
+	for _, x := range [][2]float64{
+		{got.UsableBps, is.UsableBps},
+		{got.SiftedHz[0], is.SiftedHz[0]},
+		{got.QBER[0], is.QBER[0]},
+		{got.QBER[1], is.QBER[1]},
+		{got.Arms[Alice].SinglesHz, is.Arms[Alice].SinglesHz},
+		{got.Arms[Bob].SinglesHz, is.Arms[Bob].SinglesHz},
+	} {
+		if math.Abs(x[0]-x[1]) > 1e-9*x[1] {
+			t.Errorf("%s: %v, and %v with the figures stated", name, got, is)
+			break
 		}
 	}
 }

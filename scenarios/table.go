@@ -159,7 +159,7 @@ var lightRows = []row{
 	{
 		name: "source.unpaired_photons_hz." + eitherArm, unit: "Hz", hi: maxRateHz, example: "0",
 		def: "0", source: noneStated,
-		meaning: "light of the source without a partner, its own Raman light, in photons per second before any loss",
+		meaning: "light of the source without a partner, its own Raman light, in photons per second before any loss; a pulsed source makes it in its pulses",
 		at:      func(s *Scenario, i int) *float64 { return &s.Source.UnpairedHz[i] },
 	},
 	{

@@ -126,15 +126,18 @@ def link(inputs):
         if not pulsed:
             light = pairs * x_eta * q / 2
         elif mp.isinf(modes):
-            light = rate * -mp.expm1(-mu * x_eta * q / 2)
+            light = rate * -mp.expm1(-(mu * x_eta * q + 2 * lone / rate) / 2)
         else:
-            light = rate * (1 - (1 + mu * x_eta * q / (2 * modes)) ** -modes)
-        noise = a["dark_counts_hz"] + a["background_hz"] + lone
+            light = rate * (1 - mp.exp(-lone / rate) * (1 + mu * x_eta * q / (2 * modes)) ** -modes)
+        noise = a["dark_counts_hz"] + a["background_hz"] + (0 if pulsed else lone)
         dead = a["dead_time_ns"] * mpf("1e-9")
         if pulsed:  # between pulses nothing is lost
             dead = mp.floor(dead * rate + mpf("1e-9")) / rate
         m, live = respond(light + noise, dead, a["afterpulsing"])
-        return m, live, (noise + a["afterpulsing"] * m) * tau
+        counts = (noise + a["afterpulsing"] * m) * tau
+        if pulsed:  # made in the pulse, as the pairs are, and in the window with their chance
+            counts += lone / rate * own[arms.index(a)]
+        return m, live, counts
 
     det = [[detector(a, basis) for basis in (0, 1)] for a in arms]
     kept = mpf(1)
