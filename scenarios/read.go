@@ -238,10 +238,15 @@ func (e *row) outside(x float64) string {
 // numbers is the range without regard to its very ends.
 func (e *row) numbers() string { return figure(e.lo) + " to " + figure(e.hi) }
 
+// nearOne is up to where a fraction above 1 may be a slip rather than per cent.
+const nearOne = 2
+
 // rangeHint guesses what a number outside the range was meant to be.
 func (e *row) rangeHint(x float64) string {
 	name := e.subject()
 	switch {
+	case e.fraction && x > 1 && x <= nearOne:
+		return name + " is a fraction, at most 1; in per cent it would be " + brief(x/100)
 	case e.fraction && x > 1 && x <= 100 && e.contains(x/100):
 		return name + " is a fraction: " + brief(x/100)
 	case e.hint == lengthHint && x > e.hi:

@@ -95,10 +95,7 @@ const (
 
 // beyondScan doubts a power that the scan did not reach.
 func (r *reader) beyondScan(scan sources.PowerScan) {
-	most := 0.0
-	for _, p := range scan.Points {
-		most = max(most, p.PowerMW)
-	}
+	_, most := scan.Range()
 	if power := r.s.Source.PowerScan.PowerMW; power > most {
 		r.s.Repairs = append(r.s.Repairs, Repair{
 			scanDoubtful, powerScanEntry + ".power_mw",

@@ -1,6 +1,9 @@
 package sources
 
-import "fmt"
+import (
+	"fmt"
+	"math"
+)
 
 // PowerScan is what was counted at the source without analysers, one detector
 // an arm, at several powers of the pump; index 0 is Alice's arm, 1 is Bob's.
@@ -55,6 +58,15 @@ func (s PowerScan) accidentalsHz(p ScanPoint) float64 {
 		return p.SinglesHz[0] * p.SinglesHz[1] * p.WindowPs / psPerSecond
 	}
 	return 0
+}
+
+// Range returns the least and the greatest power of a scan, in mW.
+func (s PowerScan) Range() (leastMW, mostMW float64) {
+	leastMW = math.Inf(1)
+	for _, p := range s.Points {
+		leastMW, mostMW = min(leastMW, p.PowerMW), max(mostMW, p.PowerMW)
+	}
+	return leastMW, mostMW
 }
 
 // seconds returns the counting time of a point, 1 if it is not given.

@@ -270,3 +270,26 @@ func TestScanOneArmsNoiseKnown(t *testing.T) {
 		t.Errorf("%+v", r)
 	}
 }
+
+// Between the points the fit expects what it expects at them, pairs and noise
+// known apart or not; and what made the scan, where that had no noise.
+func TestScanExpected(t *testing.T) {
+	same := func(a, b, within float64) bool { return math.Abs(a-b) <= within*math.Abs(b) }
+	for _, truth := range []scanTruth{fourWave(), downConversion()} {
+		for _, o := range []ScanOptions{truth.options(), {Order: truth.order, WindowShare: truth.share}} {
+			r := mustScan(t, truth.scan(nil), o)
+			for _, p := range r.Points {
+				singles, pairs := r.Expected(p.PowerMW)
+				if !same(singles[0], p.SinglesFitHz[0], 1e-9) || !same(singles[1], p.SinglesFitHz[1], 1e-9) || !same(pairs, p.TrueFitHz, 1e-9) {
+					t.Errorf("order %d at %g mW: %v, %v, and in the list %+v", truth.order, p.PowerMW, singles, pairs, p)
+				}
+			}
+			const between = 0.9
+			made := truth.xi * math.Pow(between, float64(truth.order))
+			singles, pairs := r.Expected(between)
+			if want := truth.eta[1]*(made+truth.raman[1]*between) + truth.n[1]; !same(singles[1], want, 1e-4) || !same(pairs, truth.eta[0]*truth.eta[1]*truth.share*made, 1e-4) {
+				t.Errorf("order %d between: %v, %v; made with %v", truth.order, singles, pairs, want)
+			}
+		}
+	}
+}

@@ -210,3 +210,15 @@ func (r ScanFit) PairRateHz(powerMW float64) Estimate {
 func (r ScanFit) UnpairedHz(arm int, powerMW float64) Estimate {
 	return r.LinearNoisePerMW[arm].scaled(powerMW)
 }
+
+// Expected returns what the fit expects to be counted per second at a power in
+// mW: singles of both arms, and coincidences less accidentals. It needs no more
+// than the fit itself, also where that does not tell pairs from linear noise.
+func (r ScanFit) Expected(powerMW float64) (singlesHz [2]float64, trueHz float64) {
+	theta := r.fit.theta
+	pairs := theta[scanPairs] * math.Pow(powerMW, float64(r.Order))
+	for arm := range singlesHz {
+		singlesHz[arm] = theta[scanEtaA+arm]*(pairs+theta[scanRamanA+arm]*powerMW) + theta[scanDarkA+arm]
+	}
+	return singlesHz, theta[scanEtaA] * theta[scanEtaB] * r.WindowShare * pairs
+}

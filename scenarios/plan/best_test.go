@@ -182,7 +182,7 @@ func TestDecidingSentences(t *testing.T) {
 	var b strings.Builder
 	for _, row := range settable(t) {
 		c := answeredCase(row.s)
-		limits, err := newAsker(row.s).limits(t.Context(), nil)
+		limits, err := newAsker(row.s).limits(t.Context(), nil, func() {})
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -213,7 +213,7 @@ func BenchmarkLimits(b *testing.B) {
 	}
 	b.ReportAllocs()
 	for b.Loop() {
-		if _, err := a.limits(b.Context(), curve); err != nil {
+		if _, err := a.limits(b.Context(), curve, func() {}); err != nil {
 			b.Fatal(err)
 		}
 	}

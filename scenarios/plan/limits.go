@@ -75,15 +75,19 @@ func repeaterless(r *reply) float64 {
 }
 
 // limits computes the chart at the distances of a curve, and says what holds
-// the link back at the installed length; nil without a state.
-func (a *asker) limits(ctx context.Context, curve []Point) (*Limits, error) {
+// the link back at the installed length; nil without a state. It ticks once a
+// distance.
+func (a *asker) limits(ctx context.Context, curve []Point, tick func()) (*Limits, error) {
 	if a.unknown {
 		return nil, nil
 	}
 	l := newLimiter(a)
 	found := &Limits{Points: make([]LimitPoint, len(curve))}
 	err := onCores(ctx, len(curve), func() func(int) {
-		return func(i int) { found.Points[i] = l.point(curve[i].DistanceKm) }
+		return func(i int) {
+			found.Points[i] = l.point(curve[i].DistanceKm)
+			tick()
+		}
 	})
 	l.heldBack(found)
 	return found, err

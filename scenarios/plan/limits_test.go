@@ -19,7 +19,7 @@ func limitsOf(t testing.TB, s *scenarios.Scenario, points int) *Limits {
 	for i := range curve {
 		curve[i].DistanceKm = 40 * float64(i) / float64(max(1, points-1))
 	}
-	found, err := newAsker(s).limits(t.Context(), curve)
+	found, err := newAsker(s).limits(t.Context(), curve, func() {})
 	if err != nil {
 		t.Fatal(err)
 	}

@@ -31,6 +31,9 @@ func New(ctx context.Context, s *scenarios.Scenario, version string, progress fu
 	}
 	toKm, points := endOfCurve(s, p.Cases), int(s.Points)
 	t := &ticker{total: points*len(asked) + asked[0].drawsToMake(), told: progress}
+	if !asked[0].unknown {
+		t.total += points // of the limits
+	}
 	if err := addCurves(ctx, p, asked, toKm, points, t.tick); err != nil {
 		return nil, err
 	}
@@ -41,7 +44,7 @@ func New(ctx context.Context, s *scenarios.Scenario, version string, progress fu
 	if p.Buying, err = buying(ctx, asked, p.Cases); err != nil {
 		return nil, err
 	}
-	if p.Cases[0].Limits, err = asked[0].limits(ctx, p.Cases[0].Curve); err != nil {
+	if p.Cases[0].Limits, err = asked[0].limits(ctx, p.Cases[0].Curve, t.tick); err != nil {
 		return nil, err
 	}
 	p.Needs = needs(s)

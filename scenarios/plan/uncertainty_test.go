@@ -193,7 +193,7 @@ func TestInterruptedDraws(t *testing.T) {
 // TestProgressOfDraws: one total from the first to the last, and it is reached.
 func TestProgressOfDraws(t *testing.T) {
 	s := read(t, append(uncertainFigures, set{"uncertainty.draws", "100"})...)
-	const want = 21 + 100
+	const want = 21 + 100 + 21 // distances, draws, distances of the limits
 	var told [want + 1]atomic.Int64
 	_, err := New(t.Context(), s, "test", func(done, total int) {
 		if total != want || done < 1 || done > want {

@@ -39,7 +39,11 @@ func (r *SpectralMap) sentence() string {
 	default:
 		text += fmt.Sprintf(", where %s give none.", all)
 	}
-	return text + fmt.Sprintf(" They pass %s of the pairs, with a %s instead of %s.", perCent(best.Share), best.tangleText(), r.Whole.tangleFigure())
+	text += fmt.Sprintf(" They pass %s of the pairs, with a tangle of %s instead of %s.", perCent(best.Share), best.tangleFigure(), r.Whole.tangleFigure())
+	if best.Tangle == nil {
+		text += " Nothing is known at worst."
+	}
+	return text
 }
 
 // tangleText names the tangle, as far as it is known.

@@ -35,10 +35,7 @@ func (t *task) stateInScenario(entry string) {
 // scanInScenario is that of a power scan, at the power that is best for the
 // link, else at the greatest that was measured.
 func (t *task) scanInScenario(scan sources.PowerScan) {
-	power := 0.0
-	for _, p := range scan.Points {
-		power = max(power, p.PowerMW)
-	}
+	_, power := scan.Range()
 	if t.Link != nil && t.Link.Pump != nil {
 		power = t.Link.Pump.PowerMW
 	}

@@ -59,7 +59,22 @@ func scanOf(scan sources.PowerScan, fit sources.ScanFit) *ScanResult {
 	for i, p := range fit.Points {
 		r.Points = append(r.Points, pointOf(scan.Points[i], p, fit))
 	}
+	r.Fitted = fittedCurve(scan, fit)
 	return r
+}
+
+const fittedPowers = 61
+
+// fittedCurve is the fit from the least to the greatest power of a scan.
+func fittedCurve(scan sources.PowerScan, fit sources.ScanFit) []ScanFitted {
+	lo, hi := scan.Range()
+	curve := make([]ScanFitted, fittedPowers)
+	for i := range curve {
+		at := lo + (hi-lo)*float64(i)/(fittedPowers-1)
+		singles, pairs := fit.Expected(at)
+		curve[i] = ScanFitted{at, plan.PerArm{Alice: singles[0], Bob: singles[1]}, pairs}
+	}
+	return curve
 }
 
 func pointOf(as sources.ScanPoint, p sources.ScanResidual, fit sources.ScanFit) ScanPoint {

@@ -20,9 +20,17 @@ type ScanResult struct {
 	Chi2PerDof         *float64        `json:"chi2_per_dof"`
 	PValue             *float64        `json:"p_value"`
 	Points             []ScanPoint     `json:"points"`   // in file order
+	Fitted             []ScanFitted    `json:"fitted"`   // from the least to the greatest power that was measured
 	Told               []string        `json:"told"`     // sentences: what the scan tells, and what that rests on
 	NotTold            []string        `json:"not_told"` // sentences: what it does not tell, and what would
 	Doubts             []string        `json:"doubts"`   // sentences: what is amiss or was assumed
+}
+
+// ScanFitted is what the fit expects at one power.
+type ScanFitted struct {
+	PowerMW   float64     `json:"power_mw"`
+	SinglesHz plan.PerArm `json:"singles_hz"`
+	TrueHz    float64     `json:"true_hz"` // coincidences less accidentals
 }
 
 // ScanSlopes are the growth of the rates at order 1, and the bounds they set.

@@ -11,12 +11,13 @@ import (
 type panel struct {
 	Name   string
 	Points []panelPoint
+	Fit    [][2]float64 // x and y along the fit
 }
 
 // panelPoint is one measurement; what is nil is not known.
 type panelPoint struct {
-	X, Measured, Fitted float64
-	SD, Residual        *float64
+	X, Measured  float64
+	SD, Residual *float64
 }
 
 // Measures of a panel.
@@ -58,11 +59,14 @@ func drawPanels(f *figure, z size, xName string, panels []panel) template.HTML {
 func (p *panel) draw(d *drawing, a *axes) {
 	high := 0.0
 	for _, q := range p.Points {
-		high = max(high, q.Measured, q.Fitted)
+		high = max(high, q.Measured)
 		if q.SD != nil {
 			high = max(high, q.Measured+*q.SD)
 		}
 		a.yLo = min(a.yLo, q.Measured)
+	}
+	for _, q := range p.Fit {
+		high = max(high, q[1])
 	}
 	low := a.yLo
 	_, a.yHi = fromZero(high)
@@ -70,9 +74,9 @@ func (p *panel) draw(d *drawing, a *axes) {
 	d.text("strong", fromHere, 0, a.top-13, p.Name)
 	a.drawY(d, 4)
 	d.line("edge", a.left, a.bottom, a.right, a.bottom)
-	xs, ys := make([]float64, len(p.Points)), make([]float64, len(p.Points))
-	for i, q := range p.Points {
-		xs[i], ys[i] = a.x(q.X), a.y(q.Fitted)
+	xs, ys := make([]float64, len(p.Fit)), make([]float64, len(p.Fit))
+	for i, q := range p.Fit {
+		xs[i], ys[i] = a.x(q[0]), a.y(q[1])
 	}
 	d.curve("fit-line", xs, ys)
 	for _, q := range p.Points {

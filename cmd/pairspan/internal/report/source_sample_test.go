@@ -109,6 +109,7 @@ func sampleScan() *source.ScanResult {
 			PairRateHz: fig(411000*p*p, 8300*p*p), UnpairedPhotonsHz: source.PerArm{Alice: fig(51000*p, 2100*p), Bob: fig(43000*p, 1900*p)},
 		}
 		s.Points = append(s.Points, at)
+		s.Fitted = append(s.Fitted, source.ScanFitted{PowerMW: p, SinglesHz: at.SinglesFitHz, TrueHz: c})
 	}
 	s.Points[0].TrueSDHz, s.Points[0].TrueResidual = nil, nil
 	return s

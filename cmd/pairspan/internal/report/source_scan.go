@@ -1,10 +1,6 @@
 package report
 
-import (
-	"math"
-
-	"pairspan/scenarios/source"
-)
+import "pairspan/scenarios/source"
 
 // scanSection is what a power scan says.
 type scanSection struct {
@@ -33,15 +29,21 @@ func scanFigure(s *source.ScanResult) *figure {
 	}
 	f := &figure{
 		ID: "scan", Title: "Rates against pump power", Finding: scanFinding(s),
-		Reading: "Dots: measured, with the error of the counting; line: the fit at the measured powers, joined. Below each: measured less fitted in standard deviations; the shade holds ±2.",
+		Reading: "Dots: measured, with the error of the counting; line: the fit. Below each: measured less fitted in standard deviations; the shade holds ±2.",
 		Tables:  []table{scanTable(s), pairsTable(s)},
 	}
 	panels := []panel{{Name: "Alice’s singles, Hz"}, {Name: "Bob’s singles, Hz"}, {Name: "Coincidences less accidentals, Hz"}}
 	for i := range s.Points {
 		p := &s.Points[i]
-		panels[0].Points = append(panels[0].Points, panelPoint{p.PowerMW, p.SinglesHz.Alice, p.SinglesFitHz.Alice, p.SinglesSDHz.Alice, p.SinglesResidual.Alice})
-		panels[1].Points = append(panels[1].Points, panelPoint{p.PowerMW, p.SinglesHz.Bob, p.SinglesFitHz.Bob, p.SinglesSDHz.Bob, p.SinglesResidual.Bob})
-		panels[2].Points = append(panels[2].Points, panelPoint{p.PowerMW, p.TrueHz, p.TrueFitHz, p.TrueSDHz, p.TrueResidual})
+		panels[0].Points = append(panels[0].Points, panelPoint{p.PowerMW, p.SinglesHz.Alice, p.SinglesSDHz.Alice, p.SinglesResidual.Alice})
+		panels[1].Points = append(panels[1].Points, panelPoint{p.PowerMW, p.SinglesHz.Bob, p.SinglesSDHz.Bob, p.SinglesResidual.Bob})
+		panels[2].Points = append(panels[2].Points, panelPoint{p.PowerMW, p.TrueHz, p.TrueSDHz, p.TrueResidual})
+	}
+	for i := range s.Fitted {
+		p := &s.Fitted[i]
+		panels[0].Fit = append(panels[0].Fit, [2]float64{p.PowerMW, p.SinglesHz.Alice})
+		panels[1].Fit = append(panels[1].Fit, [2]float64{p.PowerMW, p.SinglesHz.Bob})
+		panels[2].Fit = append(panels[2].Fit, [2]float64{p.PowerMW, p.TrueHz})
 	}
 	for _, z := range []size{middle, narrow} {
 		f.Drawings = append(f.Drawings, drawPanels(f, z, "pump power, mW", panels))
@@ -53,7 +55,7 @@ func scanFigure(s *source.ScanResult) *figure {
 func scanFinding(s *source.ScanResult) string {
 	least, most := s.Points[0].PowerMW, s.Points[0].PowerMW
 	for i := range s.Points {
-		least, most = math.Min(least, s.Points[i].PowerMW), math.Max(most, s.Points[i].PowerMW)
+		least, most = min(least, s.Points[i].PowerMW), max(most, s.Points[i].PowerMW)
 	}
 	said := itoa(len(s.Points)) + " points from " + digits(least, 3) + " to " + digits(most, 3) + nbsp + "mW"
 	if s.PairsHzPerMWk.Value != nil {
