@@ -152,6 +152,9 @@ type Default struct{ Entry, Value, Source string }
 // Repair is a doubtful figure that was mended while reading, and how.
 type Repair struct{ Rule, Entry, Sentence string }
 
+// RepairRules are the rules of all repairs.
+var RepairRules = []string{stateMended, stateFitsBadly, scanDoubtful, delaysDoubtful, spectralDoubtful}
+
 // Case is one compared case: the scenario after its changes.
 type Case struct {
 	Name     string

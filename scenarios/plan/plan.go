@@ -81,6 +81,7 @@ func (n named) answered() Case {
 		Best:             n.best(),
 		Block:            n.block(),
 	}
+	c.PassBands = passBands(n.s, c.Installed.PairRateHz)
 	for _, ch := range n.changes {
 		c.Changes = append(c.Changes, Change{ch.Entry, ch.Value})
 	}

@@ -38,6 +38,18 @@ func (a *asker) point(km float64) Point {
 	return p
 }
 
+// passBands says what stands in front of a source that makes so many pairs.
+func passBands(s *scenarios.Scenario, pairRateHz float64) *PassBands {
+	if !s.Source.SpectralMap.Used {
+		return nil
+	}
+	b := &s.Source.SpectralMap.Band
+	return &PassBands{
+		Alice: PassBand{b.FromNm[0], b.ToNm[0]}, Bob: PassBand{b.FromNm[1], b.ToNm[1]},
+		Share: b.Share, UnpairedShare: PerArm{b.UnpairedShare[0], b.UnpairedShare[1]}, PairRateHz: pairRateHz * b.Share,
+	}
+}
+
 // detectorsNeeded counts an arm's detectors: two a basis.
 func detectorsNeeded(s *scenarios.Scenario, arm int) int {
 	if s.Arms[arm].Passive {

@@ -11,12 +11,9 @@ import (
 
 var nan = math.NaN()
 
-// rules are all the warnings there are, beside what reading had to mend. The
+// rules are all the warnings there are, what reading had to mend first. The
 // limits in them are common practice, no source.
-var rules = []rule{
-	{"state-mended", repaired("state-mended")},
-	{"state-fits-badly", repaired("state-fits-badly")},
-	{"power-scan", repaired("power-scan")},
+var rules = append(repairs(), []rule{
 	{"efficiency-twice", efficiencyTwice},
 	{"coincidences-as-pairs", coincidencesAsPairs},
 	{"too-many-pairs", tooManyPairs},
@@ -29,20 +26,23 @@ var rules = []rule{
 	{"state-with-accidentals", stateWithAccidentals},
 	{"light-and-glass", lightAndGlass},
 	{"splitter-as-loss", splitterAsLoss},
-}
+}...)
 
 var armEntry = [2]string{"arms.alice.", "arms.bob."}
 
-// repaired hands on what reading found and mended, under its rule.
-func repaired(rule string) func(*watch) []doubt {
-	return func(w *watch) (found []doubt) {
-		for _, r := range w.s.Repairs {
-			if r.Rule == rule {
-				found = append(found, doubt{r.Entry, r.Sentence, nil})
+// repairs hand on what reading found and mended, each under its rule.
+func repairs() (rules []rule) {
+	for _, name := range scenarios.RepairRules {
+		rules = append(rules, rule{name, func(w *watch) (found []doubt) {
+			for _, r := range w.s.Repairs {
+				if r.Rule == name {
+					found = append(found, doubt{r.Entry, r.Sentence, nil})
+				}
 			}
-		}
-		return found
+			return found
+		}})
 	}
+	return rules
 }
 
 // efficiencyTwice: a collection loss measured with a detector holds that

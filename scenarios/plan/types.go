@@ -97,6 +97,7 @@ type Case struct {
 	QBERThreshold    float64        `json:"qber_threshold"` // equal QBER of both bases above which f leaves no key
 	DutyCycle        float64        `json:"duty_cycle"`
 	LossBudget       LossBudget     `json:"loss_budget"`
+	PassBands        *PassBands     `json:"pass_bands"` // of a spectral map; null without one
 	Installed        Point          `json:"installed"`
 	Curve            []Point        `json:"curve"`
 	QBERParts        *QBERParts     `json:"qber_parts"` // key basis, nominal state, installed; null without a state
@@ -121,6 +122,23 @@ type Change struct {
 type LossBudget struct {
 	Alice []LossItem `json:"alice"`
 	Bob   []LossItem `json:"bob"`
+}
+
+// PassBands are what a spectral map tells of the bands in front of the source.
+// pair_rate_hz counts the pairs of the whole map.
+type PassBands struct {
+	Alice         PassBand `json:"alice"`
+	Bob           PassBand `json:"bob"`
+	Share         float64  `json:"share"`          // of the pairs: both photons pass
+	UnpairedShare PerArm   `json:"unpaired_share"` // of the pairs: this arm's photon passes alone
+	PairRateHz    float64  `json:"pair_rate_hz"`   // of those that pass both, at the installed length
+}
+
+// PassBand is one arm's; a map of a single bin tells no width, and both ends
+// are its middle.
+type PassBand struct {
+	FromNm float64 `json:"from_nm"`
+	ToNm   float64 `json:"to_nm"`
 }
 
 // LossItem is one part of an arm.

@@ -1,8 +1,11 @@
 package plan
 
 import (
+	"slices"
 	"strings"
 	"testing"
+
+	"pairspan/scenarios"
 )
 
 // doubtful holds at least one scenario a rule, and what the rule suspects.
@@ -47,10 +50,6 @@ var doubtful = []struct {
 	{"splitter-as-loss", "arms.alice.fixed_loss_db", []set{{"arms.alice.fixed_loss_db", "3.0"}}, true},
 }
 
-// foundInReading are the rules of what reading a laboratory file finds, which
-// the tests of package scenarios hold.
-var foundInReading = map[string]bool{"state-mended": true, "state-fits-badly": true, "power-scan": true}
-
 // TestWarnings finds each doubtful input, with what it would change.
 func TestWarnings(t *testing.T) {
 	seen := map[string]bool{}
@@ -68,9 +67,26 @@ func TestWarnings(t *testing.T) {
 		seen[d.rule] = true
 	}
 	for _, r := range rules {
-		if !seen[r.name] && !foundInReading[r.name] {
+		if !seen[r.name] && !slices.Contains(scenarios.RepairRules, r.name) { // those the next test holds
 			t.Errorf("%s has no doubtful scenario", r.name)
 		}
+	}
+}
+
+// TestRepairsAreWarnings: whatever reading mends or doubts is said.
+func TestRepairsAreWarnings(t *testing.T) {
+	s := parse(t, base)
+	for _, rule := range scenarios.RepairRules {
+		s.Repairs = append(s.Repairs, scenarios.Repair{Rule: rule, Entry: "source", Sentence: "doubtful: " + rule})
+	}
+	var said []string
+	for _, w := range warnings([]named{{"as filed", nil, newAsker(s)}}) {
+		if w.Sentence == "doubtful: "+w.Rule {
+			said = append(said, w.Rule)
+		}
+	}
+	if !slices.Equal(said, scenarios.RepairRules) {
+		t.Errorf("said %v of %v", said, scenarios.RepairRules)
 	}
 }
 

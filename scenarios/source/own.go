@@ -72,6 +72,9 @@ func (t *task) ownSentence(s *scenarios.Scenario) string {
 		rate, ceiling = most, "up to "
 	}
 	text := fmt.Sprintf("%s of %s%s pairs per second", kind, ceiling, three(rate))
+	if m := &s.Source.SpectralMap; m.Used && m.Band.Share < 1-leastParted {
+		text += fmt.Sprintf(", of which %s pass both pass bands", perCent(m.Band.Share))
+	}
 	switch {
 	case t.State == nil:
 		return text + ", of whose state nothing is known: a pair rate says nothing of entanglement."
@@ -85,6 +88,10 @@ func (t *task) ownSentence(s *scenarios.Scenario) string {
 	return text + fmt.Sprintf(". What is known leaves the state open: with the analysers aligned a sifted bit gives from %s (at worst) to %s secret bits, and %s if it is Werner's.",
 		three(m.AtWorst.SecretFraction), three(m.AtBest.SecretFraction), three(m.Nominal.SecretFraction))
 }
+
+// leastParted is the share of the pairs that pass bands keep out, from which it
+// is told.
+const leastParted = 1e-9
 
 // withSource returns a link with the source of another scenario. What was
 // counted at either source is written out, since the detectors that counted are

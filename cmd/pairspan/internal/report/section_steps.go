@@ -1,6 +1,7 @@
 package report
 
 import (
+	"slices"
 	"strings"
 
 	"pairspan/scenarios/plan"
@@ -44,6 +45,9 @@ func steps(c *plan.Case) []step {
 		if i := actsOn(first.Part); i >= 0 {
 			all[i].First = true
 		}
+	}
+	if b := c.PassBands; b != nil && parts(b) {
+		all = slices.Insert(all, 1, step{Name: "Within both pass bands", Value: countHz(b.PairRateHz) + " (" + share(b.Share) + ")"})
 	}
 	return all
 }

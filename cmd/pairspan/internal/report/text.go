@@ -101,6 +101,9 @@ func chainRows(c *plan.Case) []string {
 	rows := []string{"From pairs to key, per second"}
 	add := func(what, value string) { rows = append(rows, pad("  "+what, 26)+value) }
 	add("pairs made", count(&p.PairRateHz))
+	if b := c.PassBands; b != nil && parts(b) {
+		add("within both pass bands", count(&b.PairRateHz)+" ("+perCent(b.Share)+")")
+	}
 	add("lost on the way", fmt.Sprintf("%s and %s dB", decibelsBare(p.LossDB.Alice), decibelsBare(p.LossDB.Bob)))
 	add("singles A, B", count(&p.SinglesHz.Alice)+", "+count(&p.SinglesHz.Bob))
 	add("live share A, B", decimals(p.LiveShare.Alice, 3)+", "+decimals(p.LiveShare.Bob, 3))
@@ -114,6 +117,9 @@ func chainRows(c *plan.Case) []string {
 	add("usable, nominal state", count(p.UsableRateBps))
 	return rows
 }
+
+// parts reports whether pass bands keep any pairs out.
+func parts(b *plan.PassBands) bool { return b.Share < 1-1e-9 }
 
 // count writes a rate or a number of counts in ASCII.
 func count(v *float64) string {
