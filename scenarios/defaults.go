@@ -3,6 +3,7 @@ package scenarios
 import (
 	"math"
 	"strconv"
+	"strings"
 
 	"pairspan/link"
 )
@@ -81,10 +82,17 @@ func wholeMap(s *Scenario, _ int) (value, source string) {
 	return "", ""
 }
 
+// inMap ends the source of a figure that a spectral map tells.
+const inMap = " in the spectral map"
+
+// FromMap reports whether a default with that source is none at all, but what a
+// spectral map tells.
+func FromMap(source string) bool { return strings.HasSuffix(source, inMap) }
+
 // middleOfBand is the wavelength that a spectral map tells.
 func middleOfBand(s *Scenario, arm int) (value, source string) {
 	if m := &s.Source.SpectralMap; m.Map != nil {
-		return figure(s.Source.WavelengthNm[arm]), "the middle of the pass band in the spectral map"
+		return figure(s.Source.WavelengthNm[arm]), "the middle of the pass band" + inMap
 	}
 	return "", ""
 }
@@ -93,7 +101,7 @@ func middleOfBand(s *Scenario, arm int) (value, source string) {
 // photon, what energy conservation makes of Alice's.
 func defaultBandwidth(s *Scenario, arm int) (value, source string) {
 	if s.Source.SpectralMap.tellsWidth(arm) {
-		return figure(s.Source.BandwidthFWHMNm[arm]), "the width of the pass band in the spectral map"
+		return figure(s.Source.BandwidthFWHMNm[arm]), "the width of the pass band" + inMap
 	}
 	if width := s.Bandwidth(Bob); arm == Bob && Stated(width) {
 		return brief(width), "energy conservation, from Alice's bandwidth"

@@ -1,6 +1,10 @@
 package plan
 
-import "strings"
+import (
+	"strings"
+
+	"pairspan/scenarios"
+)
 
 // What an input of the link is known by.
 const (
@@ -21,6 +25,8 @@ func knownBy(e *Entry) *string {
 	switch {
 	case !isInput(e.Entry):
 		return nil
+	case e.DefaultSource != nil && scenarios.FromMap(*e.DefaultSource):
+		return new(Measured)
 	case e.DefaultSource != nil:
 		return new(ByDefault)
 	case e.Origin != nil:

@@ -37,6 +37,13 @@ func TestPassBands(t *testing.T) {
 	near("pairs", c.PassBands.PairRateHz, 2e6*both/all)
 	near("Alice's upper end", c.PassBands.Alice.ToNm, 1548.4)
 	near("Bob's upper end", c.PassBands.Bob.ToNm, 1553.6)
+	for _, e := range p.Entries {
+		if of := e.Entry; strings.HasPrefix(of, "source.wavelength_nm.") || strings.HasPrefix(of, "source.bandwidth_fwhm_nm.") {
+			if e.KnownBy == nil || *e.KnownBy != Measured {
+				t.Errorf("%s is known by %v, and the map tells it", of, e.KnownBy)
+			}
+		}
+	}
 	if other := planned(t); other.Cases[0].PassBands != nil {
 		t.Errorf("%+v without a map", other.Cases[0].PassBands)
 	}

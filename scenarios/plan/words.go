@@ -158,7 +158,7 @@ func (a *asker) restsOn() string {
 // figuresByDefault counts what the file leaves out of the link itself.
 func (a *asker) figuresByDefault() (n int) {
 	for _, d := range a.s.DefaultsUsed {
-		if !strings.HasPrefix(d.Entry, "distance.") && !strings.HasPrefix(d.Entry, "uncertainty.") {
+		if !strings.HasPrefix(d.Entry, "distance.") && !strings.HasPrefix(d.Entry, "uncertainty.") && !scenarios.FromMap(d.Source) {
 			n++
 		}
 	}
