@@ -3,47 +3,15 @@ package plan
 import (
 	"fmt"
 	"reflect"
-	"strings"
 	"testing"
+
+	"pairspan/scenarios/internal/jsonpaths"
 )
 
 // TestPinnedPaths guards the JSON interface: fields may be added, never
 // renamed or given another type within a plan_format.
 func TestPinnedPaths(t *testing.T) {
-	var b strings.Builder
-	listPaths(&b, reflect.TypeFor[Plan](), "")
-	pinned(t, fmt.Sprintf("plan_format_%d.txt", Format), b.String())
-}
-
-// listPaths writes every path and type below t, in order.
-func listPaths(b *strings.Builder, t reflect.Type, path string) {
-	null := ""
-	if t.Kind() == reflect.Pointer {
-		t, null = t.Elem(), " or null"
-	}
-	switch t.Kind() {
-	case reflect.Struct:
-		if null != "" {
-			fmt.Fprintf(b, "%s object or null\n", path)
-		}
-		for i := range t.NumField() {
-			tag := t.Field(i).Tag.Get("json")
-			if tag == "" || strings.Contains(tag, ",") {
-				panic(t.Name() + "." + t.Field(i).Name + " has no plain JSON name")
-			}
-			listPaths(b, t.Field(i).Type, strings.TrimPrefix(path+"."+tag, "."))
-		}
-	case reflect.Slice:
-		listPaths(b, t.Elem(), path+"[]")
-	case reflect.String:
-		fmt.Fprintf(b, "%s string%s\n", path, null)
-	case reflect.Bool:
-		fmt.Fprintf(b, "%s true or false%s\n", path, null)
-	case reflect.Int, reflect.Float64:
-		fmt.Fprintf(b, "%s number%s\n", path, null)
-	default:
-		panic("a JSON interface of " + t.String())
-	}
+	pinned(t, fmt.Sprintf("plan_format_%d.txt", Format), jsonpaths.Of(reflect.TypeFor[Plan]()))
 }
 
 func BenchmarkPlan(b *testing.B) {

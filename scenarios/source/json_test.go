@@ -7,8 +7,9 @@ import (
 	"os"
 	"path/filepath"
 	"reflect"
-	"strings"
 	"testing"
+
+	"pairspan/scenarios/internal/jsonpaths"
 )
 
 // TestJSONIsWhole: every form encodes, and nothing in it is missing or not a
@@ -49,11 +50,10 @@ func TestJSONIsWhole(t *testing.T) {
 // TestPinnedPaths guards the JSON interface: fields may be added, never renamed
 // or given another type within a source_format.
 func TestPinnedPaths(t *testing.T) {
-	var b strings.Builder
-	listPaths(&b, reflect.TypeFor[Result](), "")
+	paths := jsonpaths.Of(reflect.TypeFor[Result]())
 	file := filepath.Join("testdata", fmt.Sprintf("source_format_%d.txt", Format))
 	if *update {
-		if err := os.WriteFile(file, []byte(b.String()), 0o644); err != nil {
+		if err := os.WriteFile(file, []byte(paths), 0o644); err != nil {
 			t.Fatal(err)
 		}
 	}
@@ -61,41 +61,7 @@ func TestPinnedPaths(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	if string(want) != b.String() {
-		t.Errorf("the paths are now\n%s", b.String())
-	}
-}
-
-// kinds are how JSON's types are named in the list.
-var kinds = map[reflect.Kind]string{reflect.String: "string", reflect.Bool: "true or false", reflect.Int: "number", reflect.Float64: "number"}
-
-// listPaths writes every path and type below t, in order.
-func listPaths(b *strings.Builder, t reflect.Type, path string) {
-	null := ""
-	if t.Kind() == reflect.Pointer {
-		t, null = t.Elem(), " or null"
-	}
-	switch kind := t.Kind(); kind {
-	case reflect.Struct:
-		if null != "" {
-			fmt.Fprintf(b, "%s object or null\n", path)
-		}
-		for i := range t.NumField() {
-			tag := t.Field(i).Tag.Get("json")
-			if tag == "" || strings.Contains(tag, ",") {
-				panic(t.Name() + "." + t.Field(i).Name + " has no plain JSON name")
-			}
-			listPaths(b, t.Field(i).Type, strings.TrimPrefix(path+"."+tag, "."))
-		}
-	case reflect.Slice, reflect.Array:
-		if null != "" {
-			fmt.Fprintf(b, "%s list or null\n", path)
-		}
-		listPaths(b, t.Elem(), path+"[]")
-	default:
-		if kinds[kind] == "" {
-			panic("a JSON interface of " + t.String())
-		}
-		fmt.Fprintf(b, "%s %s%s\n", path, kinds[kind], null)
+	if string(want) != paths {
+		t.Errorf("the paths are now\n%s", paths)
 	}
 }
