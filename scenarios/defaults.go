@@ -72,6 +72,19 @@ func (r *reader) applies(e *row) bool {
 	return true
 }
 
+// What the draws make of a tomography.
+const (
+	tomographyAsFitted = "as_fitted"
+	tomographyRepeated = "repeated"
+)
+
+func tomographyDefault(s *Scenario, _ int) (value, source string) {
+	if s.Source.Counts != nil {
+		return tomographyAsFitted, "the state counts as exact"
+	}
+	return "", ""
+}
+
 // mapEnds is where a pass band ends that is not stated.
 const mapEnds = "no pass band stated: as far as the map goes"
 

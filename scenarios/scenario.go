@@ -41,6 +41,7 @@ type Scenario struct {
 	KeyBitsPerDay              float64 // secret bits per day needed; NaN: not stated so
 	Budget                     float64 // for all detectors, any currency; NaN: none
 	Draws, Seed                float64 // of the uncertainty
+	TomographyRepeated         bool    // its counting errors are drawn
 	Measured                   Measured
 	ToKm                       float64 // end of the curve, km; NaN: the planner's choice
 	Points                     float64 // distances on the curve

@@ -127,6 +127,13 @@ var planRows = []row{
 		at:      func(s *Scenario, _ int) *float64 { return &s.Seed },
 	},
 	{
+		name: "uncertainty.tomography", form: choiceForm, example: tomographyRepeated,
+		def: tomographyAsFitted, source: "the state counts as exact", derive: tomographyDefault,
+		words:   []string{tomographyAsFitted, tomographyRepeated},
+		meaning: "whether the draws repeat the tomography of source.state.counts with its counting errors, or take the state as it was fitted",
+		set:     func(s *Scenario, _ int, word string) { s.TomographyRepeated = word == tomographyRepeated },
+	},
+	{
 		name: "measured.singles_hz." + eitherArm, unit: "Hz", hi: 1e12, exact: true, example: "110000", bob: "68000",
 		meaning: "the running link: counts per second of all the arm's detectors together",
 		at:      func(s *Scenario, i int) *float64 { return &s.Measured.SinglesHz[i] },

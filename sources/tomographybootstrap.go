@@ -37,26 +37,40 @@ const maxDraws = 100_000
 //
 // [1] Efron, Tibshirani (1993). "An Introduction to the Bootstrap". Chapman & Hall, chapter 6.
 func (c Counts) Bootstrap(ctx context.Context, fit Fit, draws int, seed uint64, figures func(DensityMatrix) []float64, progress func(done int)) ([]float64, error) {
+	results := make([][]float64, max(0, min(draws, maxDraws)))
+	err := c.repetitions(ctx, fit, draws, seed, func(k int, rho DensityMatrix) { results[k] = figures(rho) }, progress)
+	if err != nil {
+		return nil, err
+	}
+	return deviations(results), nil
+}
+
+// Repetitions returns the states that are fitted to the draws of Bootstrap, in
+// their order.
+func (c Counts) Repetitions(ctx context.Context, fit Fit, draws int, seed uint64, progress func(done int)) ([]DensityMatrix, error) {
+	states := make([]DensityMatrix, max(0, min(draws, maxDraws)))
+	err := c.repetitions(ctx, fit, draws, seed, func(k int, rho DensityMatrix) { states[k] = rho }, progress)
+	return states, err
+}
+
+// repetitions hands over the state fitted to each draw, with its number, to
+// several at once.
+func (c Counts) repetitions(ctx context.Context, fit Fit, draws int, seed uint64, take func(k int, rho DensityMatrix), progress func(done int)) error {
 	if draws < 2 || draws > maxDraws {
-		return nil, fmt.Errorf("%d draws are outside 2 to %d; some 200 are enough for error bars", draws, maxDraws)
+		return fmt.Errorf("%d draws are outside 2 to %d; some 200 are enough for error bars", draws, maxDraws)
 	}
 	if len(fit.Expected) != len(c.Settings) {
-		return nil, fmt.Errorf("the fit has %d settings and the counts have %d; give the fit of these counts", len(fit.Expected), len(c.Settings))
+		return fmt.Errorf("the fit has %d settings and the counts have %d; give the fit of these counts", len(fit.Expected), len(c.Settings))
 	}
 	l := c.likelihood()
-	results := make([][]float64, draws)
-	run := func(k int) error {
+	return shareOut(ctx, draws, func(k int) error {
 		repeated, err := l.repeated(fit, seed, k).fit()
 		if err != nil {
 			return fmt.Errorf("error bars: in a simulated repetition of the measurement %w", err)
 		}
-		results[k] = figures(repeated.Rho)
+		take(k, repeated.Rho)
 		return nil
-	}
-	if err := shareOut(ctx, draws, run, progress); err != nil {
-		return nil, err
-	}
-	return deviations(results), nil
+	}, progress)
 }
 
 // repeated returns the likelihood of counts drawn about those that the fit

@@ -72,8 +72,9 @@ func (d *firstDay) countingSD() (sd sheet) {
 }
 
 // statedSD propagates the standard deviations of the scenario to first order,
-// the settings held.
+// and the counting errors of its tomography, the settings held.
 func (d *firstDay) statedSD() (sd sheet) {
+	sd = d.repeatedSD()
 	for _, dev := range d.s.Deviations {
 		high, low := d.moved(dev, derivativeStep), d.moved(dev, -derivativeStep)
 		for r := range readings {

@@ -26,6 +26,7 @@ type asker struct {
 	need    float64 // bit/s; 0: any key
 	given   bool
 	unknown bool
+	repeats []sources.State // of a tomography, the state as fitted first; see repeat
 }
 
 func newAsker(s *scenarios.Scenario) *asker {

@@ -19,6 +19,7 @@ type input struct {
 	scenarios.Range
 	fromErf, toErf float64 // error function at the ends of the range
 	settled        bool    // known after all: it stays as stated, but uses up its random number
+	repetitions    int     // of a tomography, one of which is drawn; 0 for a number
 }
 
 func newInput(entry string, value, sd float64) (input, error) {
@@ -45,8 +46,12 @@ func inputs(s *scenarios.Scenario) (all []input) {
 	return all
 }
 
-// at returns the value below which a share u of the truncated distribution lies.
+// at returns the value below which a share u of the truncated distribution
+// lies; of a tomography one repetition or another.
 func (in *input) at(u float64) float64 {
+	if in.repetitions > 0 {
+		return 1 + math.Floor(u*float64(in.repetitions))
+	}
 	return in.Clamp(in.value + math.Sqrt2*in.sd*math.Erfinv(in.fromErf+u*(in.toErf-in.fromErf)))
 }
 
@@ -85,6 +90,8 @@ type drawer struct {
 	at     []*float64 // where the inputs live in it; nil where settled
 	stated keyrate.OperatingPoint
 	random rand.PCG
+
+	repetition float64 // of the tomography, which of asker.repeats; 0: as fitted
 }
 
 // drawer resolves the inputs once for many draws. What does not change from
@@ -97,11 +104,18 @@ func (d *draws) drawer() *drawer {
 		w.own.Arms[i].LossDBPerKm = d.s.Attenuation(i)
 	}
 	for j := range d.inputs {
-		if !d.inputs[j].settled {
-			w.at[j], _ = w.own.Number(d.inputs[j].entry) // as inputs has found it
+		switch in := &d.inputs[j]; {
+		case in.settled:
+		case in.repetitions > 0:
+			w.at[j] = &w.repetition
+		default:
+			w.at[j], _ = w.own.Number(in.entry) // as inputs has found it
 		}
 	}
-	if d.s.Source.State.Kind == sources.DensityMatrixKind && !d.varies("source.state.measured_car") {
+	switch {
+	case d.varies(countsEntry):
+		w.own.Source.State = d.repeats[0]
+	case d.s.Source.State.Kind == sources.DensityMatrixKind && !d.varies("source.state.measured_car"):
 		setState(w.own, d.s)
 	}
 	w.stated = w.own.Setting()
@@ -150,9 +164,13 @@ func (w *drawer) restore() {
 	w.settle()
 }
 
-// settle takes over what the scenario states of its settings; it is false
-// where the counts at its source cannot be.
+// settle takes over what the scenario states of its settings, and the state
+// that a tomography would show; it is false where the counts at its source
+// cannot be.
 func (w *drawer) settle() bool {
+	if w.varies(countsEntry) {
+		w.own.Source.State = w.repeats[int(w.repetition)]
+	}
 	if w.own.Source.Counted.Used {
 		if _, err := w.own.Emission(); err != nil {
 			return false

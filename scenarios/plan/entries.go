@@ -158,6 +158,8 @@ func wordsOf(s *scenarios.Scenario) map[string]string {
 	put("source.pair_rate_hz", "auto", s.Source.PumpAuto && !s.Pulsed())
 	put("source.pairs_per_pulse", "auto", s.Source.PumpAuto && s.Pulsed())
 	put("window_ps", "auto", s.WindowAuto)
+	put("uncertainty.tomography", "as_fitted", s.Source.Counts != nil)
+	put("uncertainty.tomography", "repeated", s.TomographyRepeated)
 	put("key_basis_share", "auto", s.KeyShareAuto)
 	for _, in := range s.Inputs {
 		put(in.Entry, in.Name, in.Entry != "")

@@ -11,7 +11,11 @@ func (d *draws) shares(s *sample) []Share {
 	}
 	all := make([]Share, len(d.inputs))
 	for j := range all {
-		all[j] = Share{Entry: d.inputs[j].entry, ByDraws: squaredCorrelation(s.inputs[j], s.worst)}
+		drawn := s.inputs[j]
+		if d.inputs[j].repetitions > 0 {
+			drawn = d.ofRepetitions(drawn)
+		}
+		all[j] = Share{Entry: d.inputs[j].entry, ByDraws: squaredCorrelation(drawn, s.worst)}
 		if sum > 0 {
 			all[j].FirstOrder = variances[j] / sum
 		}
@@ -40,6 +44,10 @@ func (d *draws) firstOrder() []float64 {
 	variances := make([]float64, len(d.inputs))
 	for j := range d.inputs {
 		in := &d.inputs[j]
+		if in.repetitions > 0 {
+			variances[j] = d.repeatedVariance(w, worst)
+			continue
+		}
 		var x, rate [2]float64
 		for side, step := range []float64{-slopeStep * in.sd, slopeStep * in.sd} {
 			x[side] = in.Clamp(in.value + step)

@@ -11,11 +11,14 @@ import (
 // what the interval of the state leaves open. It is nil where nothing is open.
 // c is the case answered, toKm the end of its curve; done is told of every draw.
 func (a *asker) uncertainty(ctx context.Context, c *Case, toKm float64, done func()) (*Uncertainty, error) {
-	if a.unknown || a.given && len(a.s.Deviations) == 0 {
+	if err := a.repeat(ctx); err != nil {
+		return nil, err
+	}
+	d := newDraws(a, a.inputs())
+	if a.unknown || a.given && len(d.inputs) == 0 {
 		return nil, ctx.Err()
 	}
-	d := newDraws(a, inputs(a.s))
-	u := &Uncertainty{Draws: a.drawsToMake(), Seed: int(a.s.Seed), Shares: []Share{}, Bands: []Band{}}
+	u := &Uncertainty{Draws: d.toMake(), Seed: int(a.s.Seed), Shares: []Share{}, Bands: []Band{}}
 	if u.Draws == 0 {
 		u.asStated(c)
 	} else if err := d.fill(ctx, u, c.Answer.ReachKm, toKm, done); err != nil {
@@ -29,12 +32,21 @@ func (a *asker) uncertainty(ctx context.Context, c *Case, toKm float64, done fun
 	return u, nil
 }
 
-// drawsToMake is how many draws the uncertainty takes.
+// drawsToMake is how many draws the uncertainty takes, as far as can be told
+// before a tomography is repeated.
 func (a *asker) drawsToMake() int {
-	if a.unknown || len(a.s.Deviations) == 0 {
+	if a.unknown || len(a.s.Deviations) == 0 && !a.repeatsTomography() {
 		return 0
 	}
 	return int(a.s.Draws)
+}
+
+// toMake is how many draws there are: 0 where nothing varies.
+func (d *draws) toMake() int {
+	if len(d.inputs) == 0 {
+		return 0
+	}
+	return d.count
 }
 
 // asStated is the uncertainty of a link without standard deviations.
@@ -148,6 +160,12 @@ func (a *asker) uncertaintySentence(u *Uncertainty, c *Case) string {
 		judged = ", each judged at worst"
 	}
 	s := "With the deviations stated "
+	switch counts := len(a.repeats) > 1; {
+	case counts && len(a.s.Deviations) == 0:
+		s = "With the counting errors of the tomography "
+	case counts:
+		s = "With the deviations stated and the counting errors of the tomography "
+	}
 	if u.ChanceMet != nil {
 		s += fmt.Sprintf("the need is met in %s (seed %d)%s", ofDraws(*u.ChanceMet, u.Draws), u.Seed, judged)
 	} else {

@@ -163,7 +163,11 @@ func TestSameDrawsOnOneCoreAndTwo(t *testing.T) {
 	var texts [2][]byte
 	for i := range texts {
 		before := runtime.GOMAXPROCS(i + 1)
-		texts[i], _ = json.Marshal(planned(t, uncertainFigures...))
+		fromCounts, err := New(t.Context(), counted(t), "", nil)
+		if err != nil {
+			t.Fatal(err)
+		}
+		texts[i], _ = json.Marshal([]*Plan{planned(t, uncertainFigures...), fromCounts})
 		runtime.GOMAXPROCS(before)
 	}
 	if string(texts[0]) != string(texts[1]) || len(texts[0]) == 0 {
