@@ -26,17 +26,18 @@ func (r *reader) takeOutAccidentals() {
 	}
 }
 
-// laboratoryFiles are the entries that name a file of the laboratory, with
-// what reads it into the scenario.
+// laboratoryFiles are the entries that name a file of the laboratory, with its
+// form and what reads it into the scenario.
 var laboratoryFiles = []struct {
 	entry string
+	form  sources.LaboratoryForm
 	read  func(r *reader, entry string, data []byte) error
 }{
-	{"source.state.density_matrix", (*reader).matrix},
-	{"source.state.counts", (*reader).counts},
-	{powerScanEntry + ".file", (*reader).powerScan},
-	{delaysEntry + ".file", (*reader).delays},
-	{spectralEntry + ".file", (*reader).spectralMap},
+	{"source.state.density_matrix", sources.MatrixFile, (*reader).matrix},
+	{"source.state.counts", sources.TomographyFile, (*reader).counts},
+	{powerScanEntry + ".file", sources.ScanFile, (*reader).powerScan},
+	{delaysEntry + ".file", sources.DelaysFile, (*reader).delays},
+	{spectralEntry + ".file", sources.SpectralFile, (*reader).spectralMap},
 }
 
 // readLaboratory reads the laboratory files that the scenario names.
@@ -46,8 +47,21 @@ func (r *reader) readLaboratory() {
 		if data == nil {
 			continue
 		}
+		if form, err := sources.Recognise(data); err == nil && form != f.form {
+			r.otherForm(f.entry, form)
+			continue
+		}
 		if err := f.read(r, f.entry, data); err != nil {
 			r.laboratory(f.entry, name, err)
+		}
+	}
+}
+
+// otherForm reports a file that belongs under another entry.
+func (r *reader) otherForm(entry string, form sources.LaboratoryForm) {
+	for _, f := range laboratoryFiles {
+		if n := r.stated[entry]; f.form == form {
+			r.fail(entry, n.at, show(n.text)+" is "+form.Name(), "name it under "+f.entry)
 		}
 	}
 }
