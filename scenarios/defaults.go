@@ -105,7 +105,7 @@ func FromMap(source string) bool { return strings.HasSuffix(source, inMap) }
 // middleOfBand is the wavelength that a spectral map tells.
 func middleOfBand(s *Scenario, arm int) (value, source string) {
 	if m := &s.Source.SpectralMap; m.Map != nil {
-		return figure(s.Source.WavelengthNm[arm]), "the middle of the pass band" + inMap
+		return tidy(s.Source.WavelengthNm[arm]), "the middle of the pass band" + inMap
 	}
 	return "", ""
 }
@@ -114,7 +114,7 @@ func middleOfBand(s *Scenario, arm int) (value, source string) {
 // photon, what energy conservation makes of Alice's.
 func defaultBandwidth(s *Scenario, arm int) (value, source string) {
 	if s.Source.SpectralMap.tellsWidth(arm) {
-		return figure(s.Source.BandwidthFWHMNm[arm]), "the width of the pass band" + inMap
+		return tidy(s.Source.BandwidthFWHMNm[arm]), "the width of the pass band" + inMap
 	}
 	if width := s.Bandwidth(Bob); arm == Bob && Stated(width) {
 		return brief(width), "energy conservation, from Alice's bandwidth"
@@ -152,7 +152,12 @@ func defaultPMD(s *Scenario, arm int) (value, source string) {
 }
 
 // brief writes a computed figure with six digits.
-func brief(x float64) string {
-	rounded, _ := strconv.ParseFloat(strconv.FormatFloat(x, 'g', 6, 64), 64)
-	return figure(rounded)
+func brief(x float64) string { return rounded(x, 6) }
+
+// tidy writes a wavelength without the last bits of its way.
+func tidy(x float64) string { return rounded(x, 9) }
+
+func rounded(x float64, digits int) string {
+	r, _ := strconv.ParseFloat(strconv.FormatFloat(x, 'g', digits, 64), 64)
+	return figure(r)
 }

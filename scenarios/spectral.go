@@ -168,3 +168,12 @@ func (r *reader) told(name string) bool {
 	}
 	return false
 }
+
+// ToldByMap reports whether an entry of this scenario follows from a spectral
+// map, and so cannot be varied by itself.
+func (s *Scenario) ToldByMap(entry string) bool {
+	if entry == bandwidthEntry {
+		entry += "." + armNames[Alice]
+	}
+	return slices.ContainsFunc(s.DefaultsUsed, func(d Default) bool { return d.Entry == entry && FromMap(d.Source) })
+}

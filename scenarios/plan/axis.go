@@ -46,6 +46,9 @@ func NewAxis(s *scenarios.Scenario, entry, from, to string) (*Axis, error) {
 	if err != nil {
 		return nil, refused(entry, err)
 	}
+	if s.ToldByMap(entry) {
+		return nil, refusal{entry, "the spectral map tells it", "compare takes cases with other pass bands"}
+	}
 	a := newAsker(s)
 	x := &Axis{quantity: q, inUse: q.InUse, cases: []axisCase{{scenarios.FiledName, a, false}}}
 	if !scenarios.Stated(x.inUse) {

@@ -14,13 +14,7 @@ import (
 // TestPassBands: the shares of the pairs that pass are those of the map's bins,
 // summed from its file.
 func TestPassBands(t *testing.T) {
-	text := strings.Replace(base, "state: { tangle: 0.86 }\n  wavelength_nm: { alice: 1550, bob: 1550 }\n  bandwidth_fwhm_nm: 0.8\n",
-		"spectral_map: { file: spectral-map.csv, from_nm: { alice: 1547.2, bob: 1551.6 }, to_nm: { alice: 1548.4 } }\n", 1)
-	s, err := scenarios.Read(scenarios.Examples, "x.yaml", []byte(text))
-	if err != nil {
-		t.Fatal(err)
-	}
-	p, err := New(t.Context(), s, "", nil)
+	p, err := New(t.Context(), mapped(t), "", nil)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -47,6 +41,35 @@ func TestPassBands(t *testing.T) {
 	if other := planned(t); other.Cases[0].PassBands != nil {
 		t.Errorf("%+v without a map", other.Cases[0].PassBands)
 	}
+}
+
+// TestMapCannotBeVaried: what a map tells is refused in place of distance, and
+// so is what is used where its file is read.
+func TestMapCannotBeVaried(t *testing.T) {
+	s := mapped(t)
+	for entry, want := range map[string]string{
+		"source.wavelength_nm.bob": "the spectral map tells it", "source.bandwidth_fwhm_nm": "the spectral map tells it",
+		"source.spectral_map.to_nm.bob": "no rate depends on it",
+	} {
+		if _, err := NewAxis(s, entry, "", ""); err == nil || !strings.Contains(err.Error(), want) {
+			t.Errorf("%s: %v", entry, err)
+		}
+	}
+	if _, err := NewAxis(s, "source.pair_rate_hz", "", ""); err != nil {
+		t.Error(err)
+	}
+}
+
+// mapped is base behind pass bands of the sample map.
+func mapped(t *testing.T) *scenarios.Scenario {
+	t.Helper()
+	text := strings.Replace(base, "state: { tangle: 0.86 }\n  wavelength_nm: { alice: 1550, bob: 1550 }\n  bandwidth_fwhm_nm: 0.8\n",
+		"spectral_map: { file: spectral-map.csv, from_nm: { alice: 1547.2, bob: 1551.6 }, to_nm: { alice: 1548.4 } }\n", 1)
+	s, err := scenarios.Read(scenarios.Examples, "x.yaml", []byte(text))
+	if err != nil {
+		t.Fatal(err)
+	}
+	return s
 }
 
 // bandShares sums the shares of the sample map: of all bins, of those in both
