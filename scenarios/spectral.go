@@ -62,11 +62,12 @@ func (s *Scenario) unfiltered() *Scenario {
 	if m == nil {
 		return s
 	}
-	c, whole := *s, m.Whole()
-	for arm := range c.Source.WavelengthNm {
-		c.Source.WavelengthNm[arm] = whole.CentreNm(arm)
-		if width := whole.WidthNm(arm); width > 0 {
-			c.Source.BandwidthFWHMNm[arm] = width
+	c := *s
+	for arm, edges := range m.EdgeNm {
+		from, to := edges[0], edges[len(edges)-1]
+		c.Source.WavelengthNm[arm] = (from + to) / 2
+		if to > from {
+			c.Source.BandwidthFWHMNm[arm] = to - from
 		}
 	}
 	return &c
@@ -117,7 +118,7 @@ func cutBins(stated *SpectralMap, b *sources.Band) (doubts []string) {
 	for arm, name := range [2]string{"Alice", "Bob"} {
 		off := math.Max(distance(stated.FromNm[arm], b.FromNm[arm]), distance(stated.ToNm[arm], b.ToNm[arm]))
 		if off > cutTolerance*b.WidthNm(arm) {
-			doubts = append(doubts, fmt.Sprintf("%s's pass band ends within bins: it counts as %.9g to %.9g nm, the bins whose middles lie in it.", name, b.FromNm[arm], b.ToNm[arm]))
+			doubts = append(doubts, fmt.Sprintf("%s's pass band does not end where bins end: it counts as %.9g to %.9g nm, the bins whose middles lie in it.", name, b.FromNm[arm], b.ToNm[arm]))
 		}
 	}
 	return doubts

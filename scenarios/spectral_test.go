@@ -219,3 +219,15 @@ func TestStateReplacesSpectralMap(t *testing.T) {
 		t.Errorf("%v", err)
 	}
 }
+
+// TestPassBandThatCutsBins counts as the bins whose middles it holds, and that
+// is said.
+func TestPassBandThatCutsBins(t *testing.T) {
+	s, err := mapped(t, plainMap, ", to_nm: { alice: 1550.3 }")
+	if err != nil {
+		t.Fatal(err)
+	}
+	if len(s.Repairs) != 1 || !strings.Contains(s.Repairs[0].Sentence, "Alice's pass band does not end where bins end: it counts as 1549 to 1550 nm") {
+		t.Errorf("%v", s.Repairs)
+	}
+}
