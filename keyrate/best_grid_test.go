@@ -9,7 +9,7 @@ import (
 
 func TestBestPumpAndWindowAgainstGrid(t *testing.T) {
 	keys := 0
-	searchable(2, 50, 4, func(l Link, p OperatingPoint, ceilingHz float64) {
+	searchable(2, 50, 8, func(l Link, p OperatingPoint, ceilingHz float64) {
 		most, at := grid(&l, p, 40, pumpAxis(ceilingHz), windowAxis(&l))
 		holds(t, l, l.Best(p, Free{MaxPairRateHz: ceilingHz, Window: true}), at, most)
 		if most > 0 {
