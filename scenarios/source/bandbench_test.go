@@ -27,6 +27,13 @@ func BenchmarkBestBands(b *testing.B) {
 		{"finite", []string{"window_ps: auto", "window_ps: auto\nfinite_key: { sifted_bits_per_block: 1.0e+6, epsilon_total: 1.0e-10 }"}},
 		{"pulsed", []string{"pair_rate_hz: 2.0e+6", "pulse_rate_hz: 1.0e+8\n  pairs_per_pulse: 0.02"}},
 		{"pump", []string{"pair_rate_hz: 2.0e+6", "pair_rate_hz: auto\n  max_pair_rate_hz: 1.0e+8"}},
+		{"pump-finite", []string{
+			"pair_rate_hz: 2.0e+6", "pair_rate_hz: auto\n  max_pair_rate_hz: 1.0e+8",
+			"window_ps: auto", "window_ps: auto\nfinite_key: { sifted_bits_per_block: 1.0e+6, epsilon_total: 1.0e-10 }",
+		}},
+		{"pump-pulsed", []string{"pair_rate_hz: 2.0e+6", "pulse_rate_hz: 1.0e+8\n  pairs_per_pulse: auto\n  max_pairs_per_pulse: 1"}},
+		{"pump-thermal", []string{"pair_rate_hz: 2.0e+6", "pulse_rate_hz: 1.0e+8\n  pairs_per_pulse: auto\n  max_pairs_per_pulse: 1\n  schmidt_number: 1.5"}},
+		{"pump-share", []string{"pair_rate_hz: 2.0e+6", "pair_rate_hz: auto\n  max_pair_rate_hz: 1.0e+8", "window_ps: auto", "window_ps: auto\nkey_basis_share: auto"}},
 		{"share", []string{"window_ps: auto", "window_ps: auto\nkey_basis_share: auto"}},
 	} {
 		b.Run(x.name, func(b *testing.B) {

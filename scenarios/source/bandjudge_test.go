@@ -22,6 +22,15 @@ var variants = map[string][]string{
 	"small blocks": {"window_ps: auto", "window_ps: auto\nfinite_key: { sifted_bits_per_block: 1000, epsilon_total: 1.0e-10 }"},
 	"pulsed":       {"pair_rate_hz: 2.0e+6", "pulse_rate_hz: 5.0e+7\n  pairs_per_pulse: 0.05\n  schmidt_number: 3"},
 	"bright":       {"pair_rate_hz: 2.0e+6", "pair_rate_hz: 2.0e+8\n  unpaired_photons_hz: { alice: 1.0e+6, bob: 0 }"},
+	"pump free, blocks": {
+		"pair_rate_hz: 2.0e+6", "pair_rate_hz: auto\n  max_pair_rate_hz: 1.0e+8",
+		"window_ps: auto", "window_ps: auto\nfinite_key: { sifted_bits_per_block: 1.0e+5, epsilon_total: 1.0e-10 }",
+	},
+	"pump free, pulsed":  {"pair_rate_hz: 2.0e+6", "pulse_rate_hz: 1.0e+8\n  pairs_per_pulse: auto\n  max_pairs_per_pulse: 0.5"},
+	"pump free, thermal": {"pair_rate_hz: 2.0e+6", "pulse_rate_hz: 1.0e+8\n  pairs_per_pulse: auto\n  max_pairs_per_pulse: 0.5\n  schmidt_number: 1.5"},
+	"pump and share free": {
+		"pair_rate_hz: 2.0e+6", "pair_rate_hz: auto\n  max_pair_rate_hz: 1.0e+8", "window_ps: auto", "window_ps: auto\nkey_basis_share: auto",
+	},
 	"counted": {
 		"pair_rate_hz: 2.0e+6", "counted: { singles_hz: { alice: 3.0e+4, bob: 2.8e+4 }, coincidences_hz: 1500, window_ps: 800, background_hz: { alice: 900, bob: 900 }, detector: { alice: free_running, bob: free_running } }",
 		"fixed_loss_db: 4.5", "fixed_loss_db: from_counts",
