@@ -31,7 +31,8 @@ const (
 
 // Bound returns a figure that Worth does not exceed, or one from enough up. It
 // splits the range of the settings until no part of it can reach enough, or one
-// part may that is too small to split.
+// part may that is too small to split. Where it can, it asks tangents first: see
+// tangent.
 //
 // Within a range of settings a link makes no more key than an imagined one which
 // has at once the advantages of both ends:
@@ -65,17 +66,44 @@ func (j *BandJudge) Bound(b sources.Band, enough float64) float64 {
 		}
 	}
 	through := partingOf(&b)
-	x := bandBound{j.link(&b, through), max(enough, leastKey)}
-	if most := x.within(x.all(j, through)); most > noKey || enough > noKey {
+	x := bandBound{link: j.link(&b, through), enough: max(enough, leastKey)}
+	if most := j.bound(&b, &x, through); most > noKey || enough > noKey {
 		return most
 	}
 	return without
 }
 
+// bound asks tangents first where they can serve, since they tell more of a wide
+// range than its splitting does.
+func (j *BandJudge) bound(b *sources.Band, x *bandBound, through parting) float64 {
+	all := x.all(j, through)
+	if j.hints == nil || !x.tangible(&all) {
+		return x.within(all)
+	}
+	if most := x.rough(all); most < x.enough {
+		return most
+	}
+	if at, ok := j.hints.find(b, &x.link, through, &all); ok {
+		if most, good, ok := x.near(all, at); ok {
+			j.hints.keep(b, &x.link, through, good)
+			return most
+		}
+	}
+	return x.within(all)
+}
+
+// tangible reports whether tangents can bound what the settings in a range make.
+// The division of a block between the bases must stay.
+func (x *bandBound) tangible(s *settingRange) bool {
+	even := s.lo.KeyShare == evenShare && s.hi.KeyShare == evenShare
+	return x.enough > 0 && s.lo != s.hi && (even || x.link.BlockBits == 0)
+}
+
 // bandBound is the link behind a pair of pass bands, whose worth is in question.
 type bandBound struct {
-	link   keyrate.Link
-	enough float64
+	link     keyrate.Link
+	enough   float64
+	tangents []tangent // found so far
 }
 
 // all returns all settings that are searched.
@@ -106,7 +134,13 @@ func (x *bandBound) widestWindowS() float64 {
 }
 
 func (x *bandBound) within(s settingRange) float64 {
-	most := x.most(s)
+	most := math.Inf(1)
+	if len(x.tangents) > 0 {
+		most = x.under(&s)
+	}
+	if most >= x.enough {
+		most = x.most(s)
+	}
 	if most < x.enough {
 		return most
 	}
@@ -149,7 +183,26 @@ func (s settingRange) split() (lower, upper settingRange, ok bool) {
 
 // most returns what no setting in the range is worth more than.
 func (x *bandBound) most(s settingRange) float64 {
-	l := x.link
+	l, more := x.ideal(&s)
+	if most := roughly(&l, &s, more); most < x.enough || l.BlockBits == 0 || s.lo.KeyShare < s.hi.KeyShare {
+		return most
+	}
+	r := l.Key(s.lo)
+	r.UsableBps = (r.UsableBps + roundedBps(&l, &r)) * more
+	r.SecretBps *= more
+	return worthOfKey(&r)
+}
+
+// rough is most without what a block costs for its size.
+func (x *bandBound) rough(s settingRange) float64 {
+	l, more := x.ideal(&s)
+	return roughly(&l, &s, more)
+}
+
+// ideal returns the link to be asked at the lower ends of window and pair rate,
+// and how much more the best setting may make.
+func (x *bandBound) ideal(s *settingRange) (l keyrate.Link, more float64) {
+	l = x.link
 	fewer := s.lo.PairRateHz / s.hi.PairRateHz
 	tighter := 1.0
 	if s.lo.WindowS < s.hi.WindowS {
@@ -164,14 +217,7 @@ func (x *bandBound) most(s settingRange) float64 {
 		a.BackgroundHz *= fewer
 		a.UnpairedHz *= fewer
 	}
-	r := bestOfShares(&l, s)
-	more := (1 + boundSlack) / fewer
-	r.UsableBps *= more
-	r.SecretBps *= more
-	if l.BlockBits > 0 {
-		r.UsableBps += roundedBps(&l, &r) * more
-	}
-	return worthOfKey(&r)
+	return l, (1 + boundSlack) / fewer
 }
 
 // roundedBps is what whole bits can make of a usable rate, of a block that has
@@ -186,22 +232,23 @@ func roundedBps(l *keyrate.Link, r *keyrate.Rate) float64 {
 	return roundedBits * l.DutyCycle * r.SiftedBps() / l.BlockBits
 }
 
-// bestOfShares returns the rate at the lower ends of window and pair rate, with
-// the best of each share of the key basis.
-func bestOfShares(l *keyrate.Link, s settingRange) keyrate.Rate {
-	p := s.lo
-	check := l.Key(p)
-	if s.lo.KeyShare == s.hi.KeyShare {
-		return check
+// roughly returns what an ideal link is worth at most with the best of each share
+// of the key basis, its blocks without end. What a short block costs is more than
+// what the rounding of its division can give.
+func roughly(l *keyrate.Link, s *settingRange, more float64) float64 {
+	endless, p := *l, s.lo
+	endless.BlockBits = 0
+	r := endless.Key(p)
+	if p.KeyShare = s.hi.KeyShare; p != s.lo {
+		check := r
+		r = endless.Key(p)
+		r.SiftedHz[keyrate.CheckBasis], r.QBER[keyrate.CheckBasis] = check.SiftedHz[keyrate.CheckBasis], check.QBER[keyrate.CheckBasis]
 	}
-	p.KeyShare = s.hi.KeyShare
-	r := l.Key(p)
-	r.SiftedHz[keyrate.CheckBasis], r.QBER[keyrate.CheckBasis] = check.SiftedHz[keyrate.CheckBasis], check.QBER[keyrate.CheckBasis]
-	r.FiniteBps = r.KeyBasisSecretBps(l.ErrorCorrectionF)
-	r.SecretBps = r.FiniteBps + r.SiftedHz[keyrate.CheckBasis]*max(0, keyrate.SecretFraction(r.QBER[keyrate.CheckBasis], r.QBER[keyrate.KeyBasis], l.ErrorCorrectionF))
-	r.UsableBps = l.DutyCycle * r.SecretBps
+	key := r.KeyBasisSecretBps(l.ErrorCorrectionF) * more
+	check := r.SiftedHz[keyrate.CheckBasis] * more * max(0, keyrate.SecretFraction(r.QBER[keyrate.CheckBasis], r.QBER[keyrate.KeyBasis], l.ErrorCorrectionF))
+	r.SecretBps, r.UsableBps = key+check, l.DutyCycle*(key+check)
 	if l.BlockBits > 0 {
-		r.UsableBps = l.DutyCycle * r.FiniteBps
+		r.UsableBps = l.DutyCycle * key
 	}
-	return r
+	return worthOfKey(&r)
 }

@@ -27,6 +27,7 @@ type BandJudge struct {
 	free   keyrate.Free // MaxPairRateHz is that of the whole map
 	jitter [3]float64   // FWHM of both detectors and the clock, ps
 	arms   [2][][]armBand
+	hints  *bandHints // nil: Bound does without
 }
 
 // armBand is one arm behind one of its bands.
@@ -65,6 +66,7 @@ func NewBandJudge(s *scenarios.Scenario, m *sources.SpectralMap) (*BandJudge, er
 			}
 		}
 	}
+	j.hints = newBandHints(j.arms[0])
 	return j, nil
 }
 
@@ -191,6 +193,9 @@ func (j *BandJudge) Worth(b sources.Band) float64 {
 	l, p := j.setting(&b)
 	r := l.Key(p)
 	if worth := worthOfKey(&r); worth > noKey {
+		if worth > 0 && j.hints != nil {
+			j.hints.keep(&b, &l, partingOf(&b), p)
+		}
 		return worth
 	}
 	return j.worthWithoutKey(&b)
