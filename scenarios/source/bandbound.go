@@ -65,9 +65,8 @@ func (j *BandJudge) Bound(b sources.Band, enough float64) float64 {
 			return without
 		}
 	}
-	through := partingOf(&b)
-	x := bandBound{link: j.link(&b, through), enough: max(enough, leastKey)}
-	if most := j.bound(&b, &x, through); most > noKey || enough > noKey {
+	x := bandBound{link: j.link(&b), enough: max(enough, leastKey)}
+	if most := j.bound(&b, &x); most > noKey || enough > noKey {
 		return most
 	}
 	return without
@@ -75,17 +74,17 @@ func (j *BandJudge) Bound(b sources.Band, enough float64) float64 {
 
 // bound asks tangents first where they can serve, since they tell more of a wide
 // range than its splitting does.
-func (j *BandJudge) bound(b *sources.Band, x *bandBound, through parting) float64 {
-	all := x.all(j, through)
+func (j *BandJudge) bound(b *sources.Band, x *bandBound) float64 {
+	all := x.all(j)
 	if j.hints == nil || !x.tangible(&all) {
 		return x.within(all)
 	}
 	if most := x.rough(all); most < x.enough {
 		return most
 	}
-	if at, ok := j.hints.find(b, &x.link, through, &all); ok {
+	if at, ok := j.hints.find(b, &x.link, &all); ok {
 		if most, good, ok := x.near(all, at); ok {
-			j.hints.keep(b, &x.link, through, good)
+			j.hints.keep(b, &x.link, good)
 			return most
 		}
 	}
@@ -107,9 +106,8 @@ type bandBound struct {
 }
 
 // all returns all settings that are searched.
-func (x *bandBound) all(j *BandJudge, through parting) settingRange {
+func (x *bandBound) all(j *BandJudge) settingRange {
 	free, p := &j.free, j.setup
-	p.PairRateHz *= through.pairs
 	a := settingRange{p, p}
 	if free.MaxPairRateHz > 0 {
 		a.lo.PairRateHz = p.PairRateHz * weakestPump

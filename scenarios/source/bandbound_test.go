@@ -93,10 +93,9 @@ func checkBound(t rapid.TB, u draws) {
 	if !u.often() {
 		j.free.MaxPairRateHz = j.setup.PairRateHz
 	}
-	through := partingOf(&b)
-	l := j.link(&b, through)
+	l := j.link(&b)
 	x := bandBound{link: l}
-	s := x.all(j, through)
+	s := x.all(j)
 	for u() < 0.8 {
 		if lower, upper, ok := s.split(); ok && u.often() {
 			s = lower

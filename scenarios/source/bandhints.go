@@ -32,7 +32,7 @@ func newBandHints(bands [][]armBand) *bandHints {
 
 // find returns a setting for a band, within the range of its settings. It is not
 // ok before there is any.
-func (h *bandHints) find(b *sources.Band, l *keyrate.Link, through parting, all *settingRange) (p keyrate.OperatingPoint, ok bool) {
+func (h *bandHints) find(b *sources.Band, l *keyrate.Link, all *settingRange) (p keyrate.OperatingPoint, ok bool) {
 	known := h.alice[b.First[0]][b.Last[0]-b.First[0]].Load()
 	if known == nil {
 		known = h.latest.Load()
@@ -40,7 +40,7 @@ func (h *bandHints) find(b *sources.Band, l *keyrate.Link, through parting, all 
 	if known == nil {
 		return p, false
 	}
-	pump, window := hintUnits(l, through)
+	pump, window := hintUnits(b, l)
 	keep := func(at, lo, hi float64) float64 { return min(hi, max(lo, at)) }
 	return keyrate.OperatingPoint{
 		PairRateHz: keep(known.PairRateHz*pump, all.lo.PairRateHz, all.hi.PairRateHz),
@@ -50,8 +50,8 @@ func (h *bandHints) find(b *sources.Band, l *keyrate.Link, through parting, all 
 }
 
 // keep remembers a setting that is good for a band.
-func (h *bandHints) keep(b *sources.Band, l *keyrate.Link, through parting, p keyrate.OperatingPoint) {
-	pump, window := hintUnits(l, through)
+func (h *bandHints) keep(b *sources.Band, l *keyrate.Link, p keyrate.OperatingPoint) {
+	pump, window := hintUnits(b, l)
 	p.PairRateHz /= pump
 	p.WindowS /= window
 	h.alice[b.First[0]][b.Last[0]-b.First[0]].Store(&p)
@@ -59,10 +59,11 @@ func (h *bandHints) keep(b *sources.Band, l *keyrate.Link, through parting, p ke
 }
 
 // hintUnits returns the units of a hint's pair rate and window.
-func hintUnits(l *keyrate.Link, through parting) (pump, window float64) {
+func hintUnits(b *sources.Band, l *keyrate.Link) (pump, window float64) {
 	window = 1
 	if l.PulseRateHz == 0 && l.SpreadFWHMPs > 0 {
 		window = l.SpreadFWHMPs
 	}
-	return 1 / math.Sqrt(through.passes[0]*through.passes[1]), window
+	alice, bob := b.Share+b.UnpairedShare[0], b.Share+b.UnpairedShare[1]
+	return 1 / math.Sqrt(alice*bob), window
 }

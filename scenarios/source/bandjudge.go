@@ -2,7 +2,6 @@ package source
 
 import (
 	"fmt"
-	"math"
 
 	"pairspan/keyrate"
 	"pairspan/link"
@@ -26,6 +25,7 @@ type BandJudge struct {
 	setup  keyrate.OperatingPoint
 	free   keyrate.Free // MaxPairRateHz is that of the whole map
 	jitter [3]float64   // FWHM of both detectors and the clock, ps
+	restPs float64      // of a histogram of delays
 	arms   [2][][]armBand
 	hints  *bandHints // nil: Bound does without
 }
@@ -44,7 +44,7 @@ func NewBandJudge(s *scenarios.Scenario, m *sources.SpectralMap) (*BandJudge, er
 	if err != nil {
 		return nil, err
 	}
-	j := &BandJudge{setup: s.Setting(), start: bare.Link(s.DistanceKm(), sources.Nominal)}
+	j := &BandJudge{setup: s.Setting(), start: bare.Link(s.DistanceKm(), sources.Nominal), restPs: s.Source.Delays.RestFWHMPs}
 	j.free = keyrate.Free{Window: s.WindowAuto, KeyShare: s.KeyShareAuto}
 	if s.Source.PumpAuto {
 		j.free.MaxPairRateHz = j.setup.PairRateHz
@@ -79,6 +79,7 @@ func withoutCounts(s *scenarios.Scenario) (*scenarios.Scenario, error) {
 		return nil, err
 	}
 	c := s.Clone()
+	c.Source.SpectralMap = scenarios.SpectralMap{} // the judge's own takes its place
 	for arm := range c.Arms {
 		if a := &c.Arms[arm]; a.FixedLossFromCounts {
 			a.FixedLossFromCounts, a.FixedLossDB = false, float64(emission.CollectionLoss[arm])
@@ -121,67 +122,37 @@ var (
 	armEntries = [2]string{"alice", "bob"}
 )
 
-// A parting is a pair of pass bands seen as what it does to pairs one by one.
-// With a share p of the pairs passing both bands and shares u_A and u_B of them
-// leaving Alice or Bob alone with a photon, the light is that of
-//
-//	B (p + u_A)(p + u_B)/p
-//
-// pairs per second, B those of the whole map, which lose Alice's photon on the
-// way with probability u_B/(p + u_B), and Bob's with u_A/(p + u_A), independently:
-// both then arrive p B times, Alice's alone u_A B times, Bob's alone u_B B times.
-// For a source of Poisson statistics without pulses this is the same as light
-// without a partner. With pulses it keeps that light within the pulses, where it
-// was made, and it grows with the pump.
-type parting struct {
-	pairs  float64    // per pair of the whole map
-	passes [2]float64 // chance that a photon passes
-}
-
-func partingOf(b *sources.Band) parting {
-	alice, bob := b.Share+b.UnpairedShare[0], b.Share+b.UnpairedShare[1]
-	return parting{alice / b.Share * bob, [2]float64{b.Share / bob, b.Share / alice}}
-}
-
-// link returns the link behind a pair of pass bands, to be asked with the pairs
-// per second of its parting.
-func (j *BandJudge) link(b *sources.Band, through parting) keyrate.Link {
-	l := j.start
+// link returns the link behind a pair of pass bands, to be asked with the pair
+// rate of the whole map.
+func (j *BandJudge) link(b *sources.Band) keyrate.Link {
+	l, through := j.start, b.Parting()
+	l.PairsPerEmitted = through.Pairs
 	l.StateError = b.StateError
 	var behind [2]*armBand
 	for arm := range behind {
 		behind[arm] = &j.arms[arm][b.First[arm]][b.Last[arm]-b.First[arm]]
 		a := &l.Arms[arm]
 		*a = behind[arm].arm
-		a.Transmittance *= through.passes[arm]
-		a.UnpairedHz /= through.passes[arm] // nothing of it is lost
+		a.Transmittance *= through.Passes[arm]
+		a.UnpairedHz /= through.Passes[arm] // nothing of it is lost
 	}
 	if l.PulseRateHz == 0 {
 		l.SpreadFWHMPs = link.RootSumSquare(
 			j.jitter[0], j.jitter[1], j.jitter[2],
-			max(behind[0].coherencePs, behind[1].coherencePs),
+			max(behind[0].coherencePs, behind[1].coherencePs, j.restPs),
 			behind[0].dispersionPs+behind[1].dispersionPs)
 	}
 	return l
 }
 
 // setting returns the link behind a pair of pass bands, and the best setting of
-// what the scenario leaves to the planner: the pair rate is that of the parting.
+// what the scenario leaves to the planner.
 func (j *BandJudge) setting(b *sources.Band) (l keyrate.Link, p keyrate.OperatingPoint) {
-	through := partingOf(b)
-	l, p = j.link(b, through), j.setup
-	p.PairRateHz *= through.pairs
+	l, p = j.link(b), j.setup
 	if j.free == (keyrate.Free{}) {
 		return l, p
 	}
-	free := j.free
-	free.MaxPairRateHz *= through.pairs
-	p = l.Best(p, free)
-	if most := j.free.MaxPairRateHz; most > 0 {
-		// What a person sets is the pair rate of the source.
-		p.PairRateHz = min(keyrate.Round3(p.PairRateHz/through.pairs, math.Inf(1)), most) * through.pairs
-	}
-	return l, p
+	return l, l.Best(p, j.free)
 }
 
 // Worth returns the usable rate in bit/s, at the best setting. Where there is
@@ -194,7 +165,7 @@ func (j *BandJudge) Worth(b sources.Band) float64 {
 	r := l.Key(p)
 	if worth := worthOfKey(&r); worth > noKey {
 		if worth > 0 && j.hints != nil {
-			j.hints.keep(&b, &l, partingOf(&b), p)
+			j.hints.keep(&b, &l, p)
 		}
 		return worth
 	}
@@ -203,9 +174,7 @@ func (j *BandJudge) Worth(b sources.Band) float64 {
 
 // worthWithoutKey returns the worth of a band that gives no key.
 func (j *BandJudge) worthWithoutKey(b *sources.Band) float64 {
-	through := partingOf(b)
-	l, p := j.link(b, through), j.setup
-	p.PairRateHz *= through.pairs
+	l, p := j.link(b), j.setup
 	if j.free.Window {
 		p.WindowS = leastWindowS
 	}

@@ -12,16 +12,17 @@ import (
 
 // variants are links of all kinds for the invented source.
 var variants = map[string][]string{
-	"continuous":   nil,
-	"far":          {"length_km: 9", "length_km: 55"},
-	"no key":       {"length_km: 9", "length_km: 140"},
-	"window fixed": {"window_ps: auto", "window_ps: 350"},
-	"pump free":    {"pair_rate_hz: 2.0e+6", "pair_rate_hz: auto\n  max_pair_rate_hz: 3.0e+7"},
-	"share free":   {"window_ps: auto", "window_ps: auto\nkey_basis_share: auto"},
-	"blocks":       {"window_ps: auto", "window_ps: auto\nfinite_key: { sifted_bits_per_block: 3.0e+4, epsilon_total: 1.0e-10 }"},
-	"small blocks": {"window_ps: auto", "window_ps: auto\nfinite_key: { sifted_bits_per_block: 1000, epsilon_total: 1.0e-10 }"},
-	"pulsed":       {"pair_rate_hz: 2.0e+6", "pulse_rate_hz: 5.0e+7\n  pairs_per_pulse: 0.05\n  schmidt_number: 3"},
-	"bright":       {"pair_rate_hz: 2.0e+6", "pair_rate_hz: 2.0e+8\n  unpaired_photons_hz: { alice: 1.0e+6, bob: 0 }"},
+	"continuous":      nil,
+	"far":             {"length_km: 9", "length_km: 55"},
+	"no key":          {"length_km: 9", "length_km: 140"},
+	"window fixed":    {"window_ps: auto", "window_ps: 350"},
+	"pump free":       {"pair_rate_hz: 2.0e+6", "pair_rate_hz: auto\n  max_pair_rate_hz: 3.0e+7"},
+	"share free":      {"window_ps: auto", "window_ps: auto\nkey_basis_share: auto"},
+	"blocks":          {"window_ps: auto", "window_ps: auto\nfinite_key: { sifted_bits_per_block: 3.0e+4, epsilon_total: 1.0e-10 }"},
+	"small blocks":    {"window_ps: auto", "window_ps: auto\nfinite_key: { sifted_bits_per_block: 1000, epsilon_total: 1.0e-10 }"},
+	"pulsed":          {"pair_rate_hz: 2.0e+6", "pulse_rate_hz: 5.0e+7\n  pairs_per_pulse: 0.05\n  schmidt_number: 3"},
+	"pulsed, Poisson": {"pair_rate_hz: 2.0e+6", "pulse_rate_hz: 5.0e+7\n  pairs_per_pulse: 0.05"},
+	"bright":          {"pair_rate_hz: 2.0e+6", "pair_rate_hz: 2.0e+8\n  unpaired_photons_hz: { alice: 1.0e+6, bob: 0 }"},
 	"pump free, blocks": {
 		"pair_rate_hz: 2.0e+6", "pair_rate_hz: auto\n  max_pair_rate_hz: 1.0e+8",
 		"window_ps: auto", "window_ps: auto\nfinite_key: { sifted_bits_per_block: 1.0e+5, epsilon_total: 1.0e-10 }",
@@ -53,6 +54,7 @@ func filtered(t testing.TB, s *scenarios.Scenario, m *sources.SpectralMap, b sou
 	}
 	c.Source.Counted.Used = false
 	c.Source.PairRateHz = rate * b.Share
+	c.Source.PairsPerPulse *= b.Share
 	rho, ok := m.Mixture(b.First, b.Last)
 	if !ok {
 		t.Fatal("a band without pairs")
@@ -62,10 +64,10 @@ func filtered(t testing.TB, s *scenarios.Scenario, m *sources.SpectralMap, b sou
 }
 
 // A band on a link is a scenario in whose source the band is built in, asked as
-// any scenario is. (With pulses its unpaired light would come between them.)
+// any scenario is. (A few thermal modes have other statistics.)
 func TestBandsAreScenarios(t *testing.T) {
 	m := mapFile(t)
-	for _, name := range []string{"continuous", "far", "window fixed", "share free", "blocks", "bright", "counted"} {
+	for _, name := range []string{"continuous", "far", "window fixed", "share free", "blocks", "bright", "counted", "pulsed, Poisson"} {
 		s := bandScenario(t, variants[name]...)
 		j := mustJudge(t, s, m)
 		for _, b := range []sources.Band{m.Whole(), m.Band([2]int{1, 2}, [2]int{5, 5}), m.Band([2]int{3, 3}, [2]int{3, 4})} {
@@ -97,12 +99,12 @@ func TestBandLinks(t *testing.T) {
 		j := mustJudge(t, s, m)
 		for _, b := range []sources.Band{m.Whole(), m.Band([2]int{1, 4}, [2]int{6, 4}), m.Band([2]int{0, 5}, [2]int{0, 7})} {
 			c := filtered(t, s, m, b)
-			want, through := c.Link(c.DistanceKm(), sources.Nominal), partingOf(&b)
-			got := j.link(&b, through)
+			want, through := c.Link(c.DistanceKm(), sources.Nominal), b.Parting()
+			got := j.link(&b)
 			for arm := range got.Arms {
 				x, y := got.Arms[arm], want.Arms[arm]
-				if !near(x.Transmittance, y.Transmittance*through.passes[arm], 1e-12) || !near(x.PMDError, y.PMDError, 1e-12) ||
-					!near(x.SpreadFWHMPs, y.SpreadFWHMPs, 1e-12) || !near(x.UnpairedHz*through.passes[arm], s.Source.UnpairedHz[arm], 1e-12) {
+				if !near(x.Transmittance, y.Transmittance*through.Passes[arm], 1e-12) || !near(x.PMDError, y.PMDError, 1e-12) ||
+					!near(x.SpreadFWHMPs, y.SpreadFWHMPs, 1e-12) || !near(x.UnpairedHz*through.Passes[arm], s.Source.UnpairedHz[arm], 1e-12) {
 					t.Errorf("%s: bins %v to %v: arm %d is %+v, want %+v", name, b.First, b.Last, arm, x, y)
 				}
 			}
@@ -118,7 +120,7 @@ func TestBandLinks(t *testing.T) {
 // same mean. That holds in a pulse as well.
 func TestPartingIsUnpairedLight(t *testing.T) {
 	b := sources.Band{Share: 0.3, UnpairedShare: [2]float64{0.25, 0.1}}
-	through := partingOf(&b)
+	through := b.Parting()
 	for _, mu := range []float64{1e-6, 0.01, 0.5} {
 		eta, noise := [2]float64{0.2, 0.05}, [2]float64{1e-5, 3e-4}
 		apart := keyrate.Slot{Pairs: mu * b.Share, Efficiency: eta, Noise: noise, Share: 0.8, Error: 0.02, Modes: math.Inf(1)}
@@ -126,7 +128,7 @@ func TestPartingIsUnpairedLight(t *testing.T) {
 			apart.Noise[arm] += mu * b.UnpairedShare[arm] * eta[arm] / 2
 		}
 		lossy := keyrate.Slot{
-			Pairs: mu * through.pairs, Efficiency: [2]float64{eta[0] * through.passes[0], eta[1] * through.passes[1]},
+			Pairs: mu * through.Pairs, Efficiency: [2]float64{eta[0] * through.Passes[0], eta[1] * through.Passes[1]},
 			Noise: noise, Share: 0.8, Error: 0.02, Modes: math.Inf(1),
 		}
 		q1, e1 := apart.Click()
@@ -172,7 +174,7 @@ func TestPumpAtItsCeiling(t *testing.T) {
 		fixed := *j
 		j.free.MaxPairRateHz = j.setup.PairRateHz
 		_, p := j.setting(&b)
-		if p.PairRateHz < j.setup.PairRateHz*partingOf(&b).pairs {
+		if p.PairRateHz < j.setup.PairRateHz {
 			continue
 		}
 		if got, want := j.Worth(b), fixed.Worth(b); want > 0 && !near(got, want, 1e-12) {

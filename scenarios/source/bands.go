@@ -99,7 +99,7 @@ func spectralBand(m *sources.SpectralMap, j *BandJudge, b *sources.Band) Spectra
 	} else {
 		r.QBERLab, r.Fidelity = axesOf(rho), number(rho.Fidelity())
 	}
-	single := m.Tangles && binsWithPairs(m, b) == 1
+	single := m.Tangles && m.BinsWithPairs(b) == 1
 	if !m.Tangles || single {
 		r.Concurrence, r.Tangle = number(c), number(c*c)
 	}
@@ -130,23 +130,11 @@ func tidied(x float64) float64 {
 	return math.Round(x*digits) / digits
 }
 
-// binsWithPairs counts the bins of a band.
-func binsWithPairs(m *sources.SpectralMap, b *sources.Band) (n int) {
-	for i := b.First[0]; i <= b.Last[0]; i++ {
-		for k := b.First[1]; k <= b.Last[1]; k++ {
-			if m.Bins[i][k].Share > 0 {
-				n++
-			}
-		}
-	}
-	return n
-}
-
 // onLink returns what a band gives at its best setting.
 func (j *BandJudge) onLink(b *sources.Band) *BandOnLink {
 	l, p := j.setting(b)
 	r := l.Key(p)
-	emitted := p.PairRateHz / partingOf(b).pairs
+	emitted := p.PairRateHz
 	on := &BandOnLink{
 		SourcePairRateHz: emitted, PairRateHz: emitted * b.Share,
 		UnpairedPhotonsHz: plan.PerArm{Alice: emitted * b.UnpairedShare[0], Bob: emitted * b.UnpairedShare[1]},

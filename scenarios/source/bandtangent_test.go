@@ -42,14 +42,11 @@ func (u draws) touching() (x bandBound, t tangent, s settingRange, ok bool) {
 	if u.often() {
 		j.free.MaxPairRateHz = j.setup.PairRateHz
 	}
-	through := partingOf(&b)
-	x = bandBound{link: j.link(&b, through), enough: math.SmallestNonzeroFloat64}
-	s = x.all(j, through)
+	x = bandBound{link: j.link(&b), enough: math.SmallestNonzeroFloat64}
+	s = x.all(j)
 	at := u.setting(s)
 	if u.often() {
-		free := j.free
-		free.MaxPairRateHz *= through.pairs
-		at = u.near(x.link.Best(s.hi, free), u.decades(-2, 0), s)
+		at = u.near(x.link.Best(s.hi, j.free), u.decades(-2, 0), s)
 	}
 	if !x.tangible(&s) {
 		return x, t, s, false

@@ -37,6 +37,10 @@ func TestInScenario(t *testing.T) {
 			text: mapText(t),
 			link: strings.Replace(plainLink, "  wavelength", "  unpaired_photons_hz: { alice: 3.0e+5, bob: 2.0e+5 }\n  wavelength", 1),
 		},
+		"map, free pump": {
+			text: mapText(t),
+			link: strings.Replace(plainLink, "pair_rate_hz: 2.0e+6", "pair_rate_hz: auto\n  max_pair_rate_hz: 3.0e+7", 1),
+		},
 		"map, counted": {text: mapText(t), link: strings.NewReplacer(
 			"pair_rate_hz: 2.0e+6", "counted: { singles_hz: { alice: 30000, bob: 28000 }, coincidences_hz: 1500, window_ps: 800, background_hz: { alice: 900, bob: 900 }, detector: { alice: a, bob: a } }",
 		).Replace(plainLink)},

@@ -52,7 +52,8 @@ func (t *task) passed(m *sources.SpectralMap, b *sources.Band) error {
 		return nil
 	}
 	c := t.link.Clone()
-	c.SetPassBands(m, *b) // what it doubts is said of the map already
+	c.Source.BandwidthFWHMNm[1] = c.Bandwidth(1) // of a single bin: before Alice's is narrowed
+	c.SetPassBands(m, *b)                        // what it doubts is said of the map already
 	without(c, "source.state")
 	if err := t.carry(c, t.bandEntries(c)); err != nil {
 		return err

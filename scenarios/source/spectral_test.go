@@ -30,14 +30,12 @@ func TestBandsCarry(t *testing.T) {
 		"auto":     strings.Replace(plainLink, "pair_rate_hz: 2.0e+6", "pair_rate_hz: auto\n  max_pair_rate_hz: 3.0e+7", 1),
 	} {
 		r := accounted(t, Request{File: filepath.Join("testdata", "map.csv"), On: written(t, "link.yaml", link)})
-		best, within := r.SpectralMap.Best, 1e-9
-		if name == "auto" {
-			within = 1e-3 // the search rounds the source's pair rate, the plan that of the bands
-		}
+		const within = 1e-9
+		best := r.SpectralMap.Best
 		if got, want := *r.Link.UsableRateBps, best.OnLink.UsableRateBps; math.Abs(got/want-1) > within {
 			t.Errorf("%s: %v, and the search %v", name, got, want)
 		}
-		if got, want := *r.Link.PairRateHz, best.OnLink.PairRateHz; math.Abs(got/want-1) > max(within, 1e-3) && name != "auto" {
+		if got, want := *r.Link.PairRateHz, best.OnLink.PairRateHz; math.Abs(got/want-1) > within {
 			t.Errorf("%s: %v pairs per second, and the search %v", name, got, want)
 		}
 		if math.Abs(*r.State.Tangle.Value-*best.Tangle) > 1e-12 || !strings.Contains(r.Sentence, "Pass bands") {
