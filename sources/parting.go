@@ -9,9 +9,9 @@ package sources
 // pairs per second, B those of the whole map, which lose Alice's photon on the
 // way with probability u_B/(p + u_B), and Bob's with u_A/(p + u_A), independently:
 // both then arrive p B times, Alice's alone u_A B times, Bob's alone u_B B times.
-// For a source of Poisson statistics without pulses this is the same as light
-// without a partner. With pulses it keeps that light within the pulses, where it
-// was made, and it grows with the pump.
+// Of Poisson light, pulsed or not, this is the same as light without a partner
+// beside the pairs; of a few thermal modes the photons that are alone keep their
+// statistics. It grows with the pump.
 type Parting struct {
 	Pairs  float64    // per pair of the whole map, at least the band's share
 	Passes [2]float64 // chance that Alice's and that Bob's photon passes, above 0 to 1

@@ -134,7 +134,7 @@ func (x *bandBound) widestWindowS() float64 {
 func (x *bandBound) within(s settingRange) float64 {
 	most := math.Inf(1)
 	if len(x.tangents) > 0 {
-		most = x.under(&s)
+		most = x.told(&s)
 	}
 	if most >= x.enough {
 		most = x.most(s)

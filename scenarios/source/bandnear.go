@@ -83,7 +83,7 @@ func (x *bandBound) around(all settingRange, at *keyrate.OperatingPoint) (most, 
 
 // slices bounds a range by the tangents, in ever finer slices of the shares.
 func (x *bandBound) slices(s settingRange) (most, share float64) {
-	most = x.under(&s)
+	most = x.told(&s)
 	if most < x.enough || s.hi.KeyShare <= s.lo.KeyShare*finestSlice {
 		return most, s.hi.KeyShare
 	}
@@ -97,6 +97,12 @@ func (x *bandBound) slices(s settingRange) (most, share float64) {
 	}
 	return most, share
 }
+
+// tangentMargin is what a tangent is trusted less than the tests find it to hold.
+const tangentMargin = 5e-3
+
+// told is under with a margin for what no test has met.
+func (x *bandBound) told(s *settingRange) float64 { return x.under(s) * (1 + tangentMargin) }
 
 // under returns the least that the tangents tell of a range.
 func (x *bandBound) under(s *settingRange) float64 {
