@@ -165,7 +165,7 @@ func TestSpectralMapOfOneBin(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	if c := s.Source.State.Concurrence(); math.Abs(c-0.9) > 1e-15 || s.Source.State.Knowledge() != sources.Bounded {
+	if s.Source.State != sources.FromTangle(0.81) {
 		t.Errorf("%+v", s.Source.State)
 	}
 	if got, want := s.Bandwidth(Bob), 0.8*math.Pow(1556.0/1550, 2); math.Abs(got/want-1) > 1e-12 {

@@ -85,29 +85,28 @@ func (m *SpectralMap) Within(fromNm, toNm [2]float64) (b Band, arm int, err erro
 	return b, 0, nil
 }
 
-// BinsWithPairs counts the bins of a band that hold pairs.
-func (m *SpectralMap) BinsWithPairs(b *Band) (n int) {
+// BinsWithPairs returns the bins of a band that hold pairs.
+func (m *SpectralMap) BinsWithPairs(b *Band) (bins []*SpectralBin) {
 	for i := b.First[0]; i <= b.Last[0]; i++ {
 		for k := b.First[1]; k <= b.Last[1]; k++ {
-			if m.Bins[i][k].Share > 0 {
-				n++
+			if bin := &m.Bins[i][k]; bin.Share > 0 {
+				bins = append(bins, bin)
 			}
 		}
 	}
-	return n
+	return bins
 }
 
 // State returns what is known of the pairs in a band: the mixture of its bins,
 // or the tangle of its only bin with pairs. It is unknown where tangles of
 // several bins alone are known: see MostConcurrence.
 func (m *SpectralMap) State(b *Band) State {
-	switch {
-	case !m.Tangles:
+	if !m.Tangles {
 		rho, _ := m.Mixture(b.First, b.Last)
 		return FromDensityMatrix(rho)
-	case m.BinsWithPairs(b) == 1:
-		c := m.MostConcurrence(b.First, b.Last)
-		return FromTangle(c * c)
+	}
+	if bins := m.BinsWithPairs(b); len(bins) == 1 {
+		return FromTangle(bins[0].Tangle)
 	}
 	return State{}
 }

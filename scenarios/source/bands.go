@@ -99,7 +99,7 @@ func spectralBand(m *sources.SpectralMap, j *BandJudge, b *sources.Band) Spectra
 	} else {
 		r.QBERLab, r.Fidelity = axesOf(rho), number(rho.Fidelity())
 	}
-	single := m.Tangles && m.BinsWithPairs(b) == 1
+	single := m.Tangles && len(m.BinsWithPairs(b)) == 1
 	if !m.Tangles || single {
 		r.Concurrence, r.Tangle = number(c), number(c*c)
 	}
