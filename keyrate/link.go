@@ -30,6 +30,18 @@ type Link struct {
 	AuthenticationBits float64 // secret bits that a block's messages use up
 }
 
+// PutPassBands puts pass bands in front of the source: pairs of the parting for
+// one emitted, and the chance that a photon of one passes in either arm (see
+// sources.Parting). Nothing of the light without a partner is lost.
+func (l *Link) PutPassBands(pairsPerEmitted float64, passes [2]float64) {
+	l.PairsPerEmitted = pairsPerEmitted
+	for i := range l.Arms {
+		a := &l.Arms[i]
+		a.Transmittance *= passes[i]
+		a.UnpairedHz /= passes[i]
+	}
+}
+
 // OperatingPoint is what an operator can turn, and nothing else.
 type OperatingPoint struct {
 	PairRateHz float64 // pairs per second made inside the source; pulsed: pulse rate times pairs per pulse

@@ -28,9 +28,6 @@ func (s *Scenario) Link(km float64, m sources.Member) keyrate.Link {
 	} else {
 		l.SpreadFWHMPs = s.differenceSpread(length)
 	}
-	if s.Source.SpectralMap.Used {
-		l.PairsPerEmitted = s.Source.SpectralMap.Parting.Pairs
-	}
 	if Stated(s.Source.SchmidtNumber) {
 		l.Modes = s.Source.SchmidtNumber
 	}
@@ -40,6 +37,9 @@ func (s *Scenario) Link(km float64, m sources.Member) keyrate.Link {
 	}
 	for i := range l.Arms {
 		l.Arms[i] = s.arm(i, length[i])
+	}
+	if m := &s.Source.SpectralMap; m.Used {
+		l.PutPassBands(m.Parting.Pairs, m.Parting.Passes)
 	}
 	return l
 }
@@ -140,11 +140,6 @@ func (s *Scenario) arm(i int, lengthKm float64) keyrate.Arm {
 	}
 	if s.Pulsed() {
 		arm.SpreadFWHMPs = s.clockSpread(i, lengthKm)
-	}
-	if src.SpectralMap.Used {
-		passes := src.SpectralMap.Parting.Passes[i]
-		arm.Transmittance *= passes
-		arm.UnpairedHz /= passes // nothing of it is lost
 	}
 	return arm
 }

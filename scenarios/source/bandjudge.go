@@ -126,16 +126,13 @@ var (
 // rate of the whole map.
 func (j *BandJudge) link(b *sources.Band) keyrate.Link {
 	l, through := j.start, b.Parting()
-	l.PairsPerEmitted = through.Pairs
 	l.StateError = b.StateError
 	var behind [2]*armBand
 	for arm := range behind {
 		behind[arm] = &j.arms[arm][b.First[arm]][b.Last[arm]-b.First[arm]]
-		a := &l.Arms[arm]
-		*a = behind[arm].arm
-		a.Transmittance *= through.Passes[arm]
-		a.UnpairedHz /= through.Passes[arm] // nothing of it is lost
+		l.Arms[arm] = behind[arm].arm
 	}
+	l.PutPassBands(through.Pairs, through.Passes)
 	if l.PulseRateHz == 0 {
 		l.SpreadFWHMPs = link.RootSumSquare(
 			j.jitter[0], j.jitter[1], j.jitter[2],
