@@ -66,7 +66,7 @@ func (c Counts) repetitions(ctx context.Context, fit Fit, draws int, seed uint64
 	return shareOut(ctx, draws, func(k int) error {
 		repeated, err := l.repeated(fit, seed, k).fit()
 		if err != nil {
-			return fmt.Errorf("error bars: in a simulated repetition of the measurement %w", err)
+			return fmt.Errorf("in a simulated repetition of the measurement %w", err)
 		}
 		take(k, repeated.Rho)
 		return nil

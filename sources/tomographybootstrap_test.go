@@ -129,7 +129,7 @@ func TestBootstrapErrors(t *testing.T) {
 	few := combinations("HVDR")
 	few.Settings[0].Counts, few.Settings[5].Counts = 1, 1
 	_, err := few.Bootstrap(context.Background(), fitOf(t, few), 200, 1, listed, nil)
-	expect(t, fmt.Sprint(err), "error bars: in a simulated repetition of the measurement the accidentals explain all counts: no pairs are left; check the column accidentals: it holds a number for each setting's whole time, not a rate")
+	expect(t, fmt.Sprint(err), "in a simulated repetition of the measurement the accidentals explain all counts: no pairs are left; check the column accidentals: it holds a number for each setting's whole time, not a rate")
 }
 
 // Value ± one deviation covers the truth in 68.3 % of measurements, ± 1.96 in

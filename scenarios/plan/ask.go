@@ -27,6 +27,8 @@ type asker struct {
 	given   bool
 	unknown bool
 	repeats []sources.State // of a tomography, the state as fitted first; see repeat
+
+	unrepeated string // why there are none though the scenario asks for them; "" where it does not
 }
 
 func newAsker(s *scenarios.Scenario) *asker {

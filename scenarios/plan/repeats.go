@@ -10,26 +10,35 @@ import (
 const countsEntry = "source.state.counts"
 
 // repeat finds what the counting errors of a tomography leave open of the
-// state: the states that repetitions of it would be fitted with, as far as a
-// key feels them, by their two errors. The first is the state as fitted, and the others
-// scatter about it: what the fit is off by on the average is taken out. There
-// are none unless the scenario asks, or where it has so few counts that they
-// cannot be repeated.
+// state, where the scenario asks: the states that repetitions of it would be
+// fitted with, as far as a key feels them, by their two errors. The first is the
+// state as fitted, and the others scatter about it: what the fit is off by on the
+// average is taken out. Counts may be too few to be repeated; then unrepeated
+// says so, and the state stays as fitted.
 //
 // Accidentals that are said to be in the counts are left in these states too:
 // the scenario takes them out of each.
 func (a *asker) repeat(ctx context.Context) error {
 	counts := a.s.Source.Counts
-	if !a.repeatsTomography() {
+	switch {
+	case !a.s.TomographyRepeated:
+		return nil
+	case counts == nil:
+		a.unrepeated = "there are no source.state.counts"
 		return nil
 	}
 	fit, err := counts.MaximumLikelihood()
-	if err != nil { // which reading would have refused
+	if err != nil {
+		a.unrepeated = err.Error()
 		return nil
 	}
 	states, err := counts.Repetitions(ctx, fit, sources.BootstrapDraws, uint64(a.s.Seed), nil)
-	if err != nil {
+	if ctx.Err() != nil {
 		return ctx.Err()
+	}
+	if err != nil {
+		a.unrepeated = err.Error()
+		return nil
 	}
 	a.repeats = centred(visibilities(fit.Rho), states)
 	return nil
@@ -39,6 +48,14 @@ func (a *asker) repeat(ctx context.Context) error {
 // tomography.
 func (a *asker) repeatsTomography() bool {
 	return a.s.TomographyRepeated && a.s.Source.Counts != nil
+}
+
+// tomographyNotRepeated: draws that lack what they were asked for.
+func tomographyNotRepeated(w *watch) (found []doubt) {
+	if w.unrepeated != "" {
+		found = append(found, doubt{"uncertainty.tomography", "the draws take the state as it stands: " + w.unrepeated, nil})
+	}
+	return found
 }
 
 // visibilities are those of the two bases of the key, analysers aligned.

@@ -14,6 +14,7 @@ var nan = math.NaN()
 // rules are all the warnings there are, what reading had to mend first. The
 // limits in them are common practice, no source.
 var rules = append(repairs(), []rule{
+	{"tomography-not-repeated", tomographyNotRepeated},
 	{"efficiency-twice", efficiencyTwice},
 	{"coincidences-as-pairs", coincidencesAsPairs},
 	{"too-many-pairs", tooManyPairs},

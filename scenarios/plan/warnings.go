@@ -29,6 +29,8 @@ type watch struct {
 	s     *scenarios.Scenario
 	now   reply
 	parts keyrate.ErrorParts
+
+	unrepeated string // see asker
 }
 
 // warnings applies every rule to the scenario as filed and then to the
@@ -79,10 +81,10 @@ func (a *asker) watch() *watch {
 		if a.s.Source.PumpAuto {
 			p.PairRateHz = nan // at its ceiling, which nobody may set
 		}
-		return &watch{s: a.s, now: reply{l, p, l.Key(p)}}
+		return &watch{s: a.s, now: reply{l, p, l.Key(p)}, unrepeated: a.unrepeated}
 	}
 	now := a.at(km, nominal, nil)
-	return &watch{a.s, now, now.link.ErrorParts(now.setting)}
+	return &watch{a.s, now, now.link.ErrorParts(now.setting), a.unrepeated}
 }
 
 // suspected asks again with the suspected value in place: the usable rate

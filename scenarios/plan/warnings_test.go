@@ -36,6 +36,7 @@ var doubtful = []struct {
 	{"per-cent-or-fraction", "detectors.free_running.afterpulsing", []set{{"detectors.free_running.afterpulsing", "0.3"}}, true},
 	{"per-cent-or-fraction", "detectors.free_running.efficiency", []set{{"detectors.free_running.efficiency", "0.002"}}, true},
 	{"per-cent-or-fraction", "duty_cycle", []set{{"duty_cycle", "0.009"}}, true},
+	{"tomography-not-repeated", "uncertainty.tomography", []set{{"uncertainty.tomography", "repeated"}}, false},
 	{"state-with-accidentals", "source.state", []set{{"source.pair_rate_hz", "1.0e+7"}, {"window_ps", "800"}}, true},
 	{"light-and-glass", "arms.bob.fibre", []set{{"source.wavelength_nm", "{ alice: 1550, bob: 1200 }"}, {"arms.bob.loss_db_per_km", "1.2"}}, false},
 	{"light-and-glass", "arms.bob.loss_db_per_km", []set{{"source.wavelength_nm", "{ alice: 1550, bob: 810 }"}, {"arms.bob.loss_db_per_km", "0.3"}}, true},

@@ -4,8 +4,6 @@ import (
 	"bytes"
 	"strings"
 	"testing"
-	"unicode"
-	"unicode/utf8"
 
 	"pairspan/scenarios/plan"
 	"pairspan/scenarios/source"
@@ -59,16 +57,8 @@ func TestSourceTextOfEverySample(t *testing.T) {
 		if err := SourceText(&b, r); err != nil {
 			t.Fatal(err)
 		}
-		lines := strings.Split(strings.TrimSuffix(b.String(), "\n"), "\n")
-		if len(lines) > mostLines {
-			t.Errorf("%s: %d lines", name, len(lines))
-		}
-		for _, line := range lines {
-			if utf8.RuneCountInString(line) > textWidth || strings.IndexFunc(line, unicode.IsControl) >= 0 {
-				t.Errorf("%s: %q", name, line)
-			}
-		}
-		if strings.Contains(b.String(), "NaN") || strings.Contains(b.String(), "<nil>") || !strings.Contains(b.String(), "IEC 60825-1") {
+		fitsOneScreen(t, name, b.String())
+		if !strings.Contains(b.String(), "IEC 60825-1") {
 			t.Errorf("%s:\n%s", name, b.String())
 		}
 	}

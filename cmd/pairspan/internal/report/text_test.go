@@ -18,18 +18,25 @@ func TestTextOfEverySample(t *testing.T) {
 		if err := Text(&b, p); err != nil {
 			t.Fatal(err)
 		}
-		lines := strings.Split(strings.TrimSuffix(b.String(), "\n"), "\n")
-		if len(lines) > mostLines {
-			t.Errorf("%s: %d lines", name, len(lines))
+		fitsOneScreen(t, name, b.String())
+	}
+}
+
+// fitsOneScreen holds a text to the lines and columns of a terminal, without
+// control characters or figures that are none.
+func fitsOneScreen(t *testing.T, name, text string) {
+	t.Helper()
+	lines := strings.Split(strings.TrimSuffix(text, "\n"), "\n")
+	if len(lines) > mostLines {
+		t.Errorf("%s: %d lines", name, len(lines))
+	}
+	for _, line := range lines {
+		if utf8.RuneCountInString(line) > textWidth || strings.IndexFunc(line, unicode.IsControl) >= 0 {
+			t.Errorf("%s: %q", name, line)
 		}
-		for _, line := range lines {
-			if utf8.RuneCountInString(line) > textWidth || strings.IndexFunc(line, unicode.IsControl) >= 0 {
-				t.Errorf("%s: %q", name, line)
-			}
-		}
-		if strings.Contains(b.String(), "NaN") || strings.Contains(b.String(), "<nil>") {
-			t.Errorf("%s:\n%s", name, b.String())
-		}
+	}
+	if strings.Contains(text, "NaN") || strings.Contains(text, "<nil>") {
+		t.Errorf("%s:\n%s", name, text)
 	}
 }
 
